@@ -1,0 +1,68 @@
+"""Lengths and their units: exact factors, the `$INSUNITS` codes, and how a unit is written.
+
+The factors to millimetres are exact by definition (the international inch and foot of 1959).
+"""
+
+from __future__ import annotations
+
+import math
+import re
+from dataclasses import dataclass
+
+from edgetally.errors import UsageError
+
+MM_PER: dict[str, float] = {"mm": 1.0, "cm": 10.0, "m": 1000.0, "in": 25.4, "ft": 304.8}
+
+# DXF reference, header variable $INSUNITS. Only the first group is a unit that a section is drawn in.
+INSUNITS: dict[int, str] = {1: "in", 2: "ft", 4: "mm", 5: "cm", 6: "m"}
+INSUNITS_OTHER: dict[int, str] = {
+    3: "miles", 7: "kilometres", 8: "microinches", 9: "mils", 10: "yards", 11: "angstroms", 12: "nanometres",
+    13: "microns", 14: "decimetres", 15: "decametres", 16: "hectometres", 17: "gigametres",
+    18: "astronomical units", 19: "light years", 20: "parsecs", 21: "US survey feet", 22: "US survey inches",
+    23: "US survey yards", 24: "US survey miles",
+}  # fmt: skip
+
+_SUPERSCRIPT = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
+
+
+def length_factor(source: str, target: str) -> float:
+    """Return by how much a length in unit `source` is multiplied to be in unit `target`.
+
+    The quotient of two short decimals is correctly rounded: `length_factor("in", "cm")` is the double 2.54.
+    """
+    return MM_PER[source] / MM_PER[target]
+
+
+@dataclass(frozen=True, slots=True)
+class Unit:
+    """A power of a length unit, as `mm^4`, or a unit that stands for itself, as `deg`, `kg/m` or `1`."""
+
+    base: str
+    power: int = 1
+
+    def __str__(self) -> str:
+        return self.base if self.power == 1 else f"{self.base}^{self.power}"
+
+    @property
+    def pretty(self) -> str:
+        """The unit as it is printed: mm⁴, °, kg/m."""
+        if self.base == "deg":
+            return "°"
+        return self.base if self.power == 1 else self.base + str(self.power).translate(_SUPERSCRIPT)
+
+
+_LENGTH = re.compile(r"\s*([-+]?[0-9]*[.]?[0-9]+(?:[eE][-+]?[0-9]+)?)\s*([A-Za-z]*)\s*")
+
+
+def parse_length(text: str) -> tuple[float, str]:
+    """Read a length written with its unit, as `0.05mm`, into (value, unit).
+
+    Raises UsageError where the number or the unit is missing or unknown, or the value is not finite.
+    """
+    match = _LENGTH.fullmatch(text)
+    if match is None or match.group(2) not in MM_PER:
+        raise UsageError(f"length {text!r} is not understood: write a number and its unit, as 0.05mm or 0.002in")
+    value = float(match.group(1))
+    if not math.isfinite(value) or value < 0:
+        raise UsageError(f"length {text!r} must be finite and not negative")
+    return value, match.group(2)
