@@ -8,6 +8,7 @@ edge.  Lengths are in whatever unit the caller thinks in; angles are in radians 
 
 import math
 from collections.abc import Iterable, Sequence
+from itertools import pairwise
 
 Point = tuple[float, float]
 Corner = tuple[float, float, float]  # x, y and the radius that rounds the corner
@@ -86,7 +87,7 @@ def _arc(radius: float, start: float, end: float) -> list[Edge]:
     pieces = max(1, math.ceil(abs(end - start) / math.pi - 1e-12))
     angles = [start + (end - start) * k / pieces for k in range(pieces + 1)]
     bulge = math.tan((end - start) / pieces / 4)
-    return [(*_polar(radius, a), *_polar(radius, b), bulge) for a, b in zip(angles, angles[1:], strict=False)]
+    return [(*_polar(radius, a), *_polar(radius, b), bulge) for a, b in pairwise(angles)]
 
 
 def _polar(radius: float, angle: float) -> Point:
@@ -102,7 +103,14 @@ def i_section(h: float, b: float, tw: float, tf: float, r: float = 0.0) -> Outli
 
 
 def mono_i(
-    h: float, b_top: float, t_top: float, b_bottom: float, t_bottom: float, tw: float, r: float = 0.0, bottom: float = 0.0
+    h: float,
+    b_top: float,
+    t_top: float,
+    b_bottom: float,
+    t_bottom: float,
+    tw: float,
+    r: float = 0.0,
+    bottom: float = 0.0,
 ) -> Outline:
     """I with two different parallel flanges, symmetric about x = 0, its lowest face on y = bottom."""
     web, low, high = tw / 2, b_bottom / 2, b_top / 2
@@ -119,9 +127,7 @@ def mono_i(
     return [fillet_polygon([*right, *_mirrored_in_y(right)])]
 
 
-def i_tapered(
-    h: float, b: float, tw: float, tf: float, root: float, toe: float, slope: float, gauge: float
-) -> Outline:
+def i_tapered(h: float, b: float, tw: float, tf: float, root: float, toe: float, slope: float, gauge: float) -> Outline:
     """I whose inner flange faces slope; tf is measured at the distance `gauge` from the flange's edge."""
     web, side, top = tw / 2, b / 2, h / 2
     at_edge, at_web = tf - slope * gauge, tf + slope * (side - web - gauge)
@@ -137,7 +143,14 @@ def i_tapered(
 
 
 def channel(
-    h: float, b: float, tw: float, tf: float, root: float = 0.0, toe: float = 0.0, slope: float = 0.0, gauge: float = 0.0
+    h: float,
+    b: float,
+    tw: float,
+    tf: float,
+    root: float = 0.0,
+    toe: float = 0.0,
+    slope: float = 0.0,
+    gauge: float = 0.0,
 ) -> Outline:
     """Channel open to the right, web back on x = 0, symmetric about y = 0; slope and gauge as for the tapered I."""
     top = h / 2
@@ -173,7 +186,7 @@ def tee(h: float, b: float, tw: float, tf: float, r: float = 0.0) -> Outline:
 
 
 def zed(h: float, b: float, t: float, r: float = 0.0) -> Outline:
-    """Zed of one thickness about the origin: lower flange to +x, upper to -x, b from a flange's tip to the far web face."""
+    """Zed of one thickness about the origin, lower flange to +x, upper to -x; b from flange tip to far web face."""
     half: list[Corner] = [
         (-t / 2, -h / 2, 0.0),
         (b - t / 2, -h / 2, 0.0),
@@ -201,7 +214,7 @@ def rectangular_hollow_hot(h: float, b: float, t: float) -> Outline:
 
 
 def rectangular_hollow_cold(h: float, b: float, t: float) -> Outline:
-    """Cold formed: EN 10219-2 calculates with 2 t outside up to 6 mm, 2.5 t up to 10 mm, 3 t above; inside is t less."""
+    """Cold formed: EN 10219-2 calculates with 2 t outside up to 6 mm, 2.5 t up to 10 mm, 3 t above; inside, t less."""
     times = 2.0 if t <= 6 else 2.5 if t <= 10 else 3.0
     return rectangular_hollow(h, b, t, times * t, (times - 1) * t)
 
@@ -221,7 +234,7 @@ def box(h: float, b: float, t: float) -> Outline:
 
 def strip(line: Sequence[Point], t: float, bend: float) -> Outline:
     """A strip of thickness t folded along an open centre line, every bend with the inside radius `bend`."""
-    headings = [_unit(x2 - x1, y2 - y1) for (x1, y1), (x2, y2) in zip(line, line[1:], strict=False)]
+    headings = [_unit(x2 - x1, y2 - y1) for (x1, y1), (x2, y2) in pairwise(line)]
     left: list[Corner] = []
     right: list[Corner] = []
     for index, (x, y) in enumerate(line):

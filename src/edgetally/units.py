@@ -13,6 +13,9 @@ from edgetally.errors import UsageError
 
 MM_PER: dict[str, float] = {"mm": 1.0, "cm": 10.0, "m": 1000.0, "in": 25.4, "ft": 304.8}
 
+# kg/m³: nominal values of EN 1991-1-1 and EN 1999-1-1, and EN 10088-1 for 1.4301 (from memory)
+DENSITIES: dict[str, float] = {"steel": 7850.0, "aluminium": 2700.0, "stainless": 7900.0}
+
 # DXF reference, header variable $INSUNITS. Only the first group is a unit that a section is drawn in.
 INSUNITS: dict[int, str] = {1: "in", 2: "ft", 4: "mm", 5: "cm", 6: "m"}
 INSUNITS_OTHER: dict[int, str] = {

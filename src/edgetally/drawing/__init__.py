@@ -1,1 +1,1 @@
-
+"""DXF in and out. The only place that imports ezdxf."""

@@ -1,1 +1,1 @@
-
+"""Curves → chains → loops → regions with voids. The only place that imports shapely."""

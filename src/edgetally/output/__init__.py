@@ -1,1 +1,1 @@
-
+"""Analysis → bytes: the document, the table, the figure and the sheet."""

@@ -1,1 +1,1 @@
-
+"""Numbers from regions: numpy only, no DXF and no PDF."""

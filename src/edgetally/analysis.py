@@ -1,0 +1,291 @@
+"""The whole chain as one function: read → assemble → integrate → derive. Command line, audit and API call it."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+from functools import cached_property
+from pathlib import Path
+from typing import Any
+
+from edgetally.curves import Packed
+from edgetally.drawing.loading import load
+from edgetally.drawing.reading import DrawingFile, Reading
+from edgetally.errors import DrawingError, EdgetallyError, OutlineError, UsageError
+from edgetally.findings import Finding, Severity, worst
+from edgetally.outline.assembly import assemble
+from edgetally.outline.choosing import choose
+from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
+from edgetally.outline.records import Join, Outline
+from edgetally.outline.words import at, handles, length_text, place
+from edgetally.section.area import AreaResult, area_properties
+from edgetally.section.record import Property, Section, input_rounding
+from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
+
+
+@dataclass(frozen=True, slots=True)
+class DrawingRecord:
+    """The drawing a result came from and how it was read."""
+
+    file: str
+    sha256: str
+    dxf_version: str
+    unit: str
+    unit_source: str
+    scale: float
+    join_gap: float
+    reading: Reading
+
+
+@dataclass(frozen=True, eq=False)
+class SectionResult:
+    """One section: its geometry in real lengths, its properties by key in the unit of the results, its findings."""
+
+    section: Section
+    result: AreaResult
+    properties: dict[str, Property]
+    findings: tuple[Finding, ...]
+    out_unit: str
+
+    @property
+    def name(self) -> str:
+        return self.section.name
+
+    @property
+    def region_areas(self) -> list[tuple[float, int]]:
+        """The area, in the unit of the results, and the number of voids of every region."""
+        square = length_factor(self.section.unit, self.out_unit) ** 2
+        return [(region.area * square, len(region.voids)) for region in self.section.regions]
+
+
+@dataclass(frozen=True, slots=True)
+class JoinEffect:
+    """The joins of a drawing together: number, widest gap and place [drawing's unit], and the largest possible effect
+    on area and second moments, in the unit of the results. The effect on I holds for any axis through the centroid.
+    """
+
+    count: int
+    widest: float
+    at: complex
+    area: float
+    second_moment: float
+
+
+@dataclass(frozen=True, eq=False)
+class Analysis:
+    """What `analyse` found: the drawing, its sections, and the findings on the drawing as a whole."""
+
+    drawing: DrawingRecord
+    outline: Outline
+    sections: tuple[SectionResult, ...]
+    findings: tuple[Finding, ...]
+    out_unit: str
+    density: float | None
+
+    @property
+    def all_findings(self) -> tuple[Finding, ...]:
+        return self.findings + tuple(f for section in self.sections for f in section.findings)
+
+    @property
+    def severity(self) -> Severity | None:
+        return worst(self.all_findings)
+
+    @cached_property
+    def join_effect(self) -> JoinEffect | None:
+        """The joins' largest possible effect, bounded for the largest section. None without joins."""
+        joins = self.outline.joins
+        if not joins:
+            return None
+        widest = max(joins, key=lambda join: join.gap)
+        real = self.drawing.scale * length_factor(self.drawing.unit, self.out_unit)
+        area = moment = 0.0
+        for join in joins:
+            area += join.swept * real**2
+            reach = min(_reach(s, join.at * self.drawing.scale) for s in self.sections)
+            moment += join.swept * real**2 * (reach * length_factor(self.drawing.unit, self.out_unit)) ** 2
+        return JoinEffect(len(joins), widest.gap, widest.at, area, moment)
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return the document that `tally --json` prints."""
+        from edgetally.output.document import document
+
+        return document(self)
+
+    def _repr_svg_(self) -> str:
+        from edgetally.output.svg import figure_svg
+
+        return figure_svg(self.sections[0])
+
+
+def _reach(section: SectionResult, join: complex) -> float:
+    """Bound the distance from the centroid to what a join can have moved: the join, and the size of the section."""
+    return abs(join - section.result.centroid) + section.section.size
+
+
+def analyse(
+    path: str | Path,
+    *,
+    layer: str | Sequence[str] | None = None,
+    units: str | None = None,
+    scale: float = 1.0,
+    join_gap: str = f"{DEFAULT_GAP_MM}mm",
+    select: str | None = None,
+    out_units: str | None = None,
+    density: float | str | None = None,
+    name: str | None = None,
+) -> Analysis:
+    """Read a drawing and measure the section, or sections, on a layer of it.
+
+    Parameters
+    ----------
+    path : the DXF file.
+    layer : name or shell-style pattern, or several; without it the only visible layer that carries a closed outline.
+    units : `mm`, `cm`, `m`, `in` or `ft`, the drawing's length unit; overrides the header.
+    scale : drawn length × scale = real length.
+    join_gap : the largest gap between ends that is joined, with its unit, in drawn lengths; at most 0.15 mm.
+    select : `each`, `together`, or which one (a number or a point `X,Y`) where there are several outer boundaries.
+    out_units : `mm`, `cm`, `m` or `in`, the unit of the results; the drawing's own without it.
+    density : kg/m³, or `steel`, `aluminium`, `stainless`; adds the mass per length.
+    name : the name that the result gives for the file, where `path` is a copy of it.
+
+    Raises UsageError, DrawingError or OutlineError, each with the message that the command prints.
+    """
+    if not (math.isfinite(scale) and scale > 0):
+        raise UsageError(f"the scale must be a positive number, not {scale:g}")
+    for unit_name in (units, out_units):
+        if unit_name is not None and unit_name not in MM_PER:
+            raise UsageError(f"unit {unit_name!r} is not known: use one of {', '.join(MM_PER)}")
+    gap, gap_unit = parse_length(join_gap)
+    if gap * MM_PER[gap_unit] > WIDEST_GAP_MM * (1 + 1e-12):
+        raise UsageError(
+            f"a join gap of {join_gap} is more than {WIDEST_GAP_MM} mm: ends that far apart are not joined; close the "
+            "outline in the drawing"
+        )
+    kg_per_m3 = _density(density)
+    drawing = DrawingFile(load(path))
+    findings: list[Finding] = []
+    layers = _layers(drawing, layer, gap, gap_unit, units, findings)
+    reading = drawing.read(layers)
+    findings += reading.findings
+    unit, unit_source = _unit(drawing, units, reading, findings)
+    drawn_gap = gap * length_factor(gap_unit, unit)
+    try:
+        outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
+    except OutlineError as error:
+        raise _with_skips(error, reading) from None
+    findings += [_join_finding(join, unit) for join in outline.joins]
+    chosen = choose(outline.regions, select, unit)
+    for number in outline.islands:
+        x0, y0, _, _ = outline.regions[number].box
+        text = f"part {number + 1} lies inside a void of another part"
+        findings.append(Finding("island-in-void", "note", text, (x0, y0)))
+    out_unit = out_units or unit
+    sections = tuple(
+        _measure(Section(section_name, regions, unit, input_rounding(regions) * scale), scale, out_unit, kg_per_m3)
+        for section_name, regions in chosen
+    )
+    record = DrawingRecord(
+        name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
+    )
+    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3)
+
+
+def _measure(drawn: Section, scale: float, out_unit: str, density: float | None) -> SectionResult:
+    section = Section(drawn.name, tuple(r.scaled(scale) for r in drawn.regions), drawn.unit, drawn.input_rounding)
+    result = area_properties(section, density=density)
+    properties = {key: p.converted(section.unit, out_unit) for key, p in result.properties.items()}
+    return SectionResult(section, result, properties, result.findings, out_unit)
+
+
+def _density(density: float | str | None) -> float | None:
+    if density is None:
+        return None
+    if isinstance(density, str) and density.strip().lower() in DENSITIES:
+        return DENSITIES[density.strip().lower()]
+    try:
+        value = float(density)
+    except ValueError:
+        value = math.nan
+    if not (math.isfinite(value) and value > 0):
+        names = ", ".join(f"{key} ({kg:g})" for key, kg in DENSITIES.items())
+        raise UsageError(f"density {density!r} is not understood: give kg/m³, or one of {names}")
+    return value
+
+
+def _layers(
+    drawing: DrawingFile,
+    layer: str | Sequence[str] | None,
+    gap: float,
+    gap_unit: str,
+    units: str | None,
+    findings: list[Finding],
+) -> list[str]:
+    """Return the layers to read: those named, else the only visible one that carries a closed outline."""
+    if layer is not None:
+        patterns = [layer] if isinstance(layer, str) else list(layer)
+        chosen, hidden = drawing.named_layers(patterns)
+        findings += hidden
+        return chosen
+    visible = drawing.visible_layers()
+    if not visible:
+        drawing.read([])  # says what there is instead
+    if len(visible) == 1:
+        return visible
+    unit = units or drawing.header_unit()[0] or "mm"  # only the join gap depends on it here
+    closed = []
+    for name in visible:
+        try:
+            curves = drawing.read([name]).curves
+        except EdgetallyError:
+            continue
+        if closes(curves, gap * length_factor(gap_unit, unit)):
+            closed.append(name)
+    if len(closed) == 1:
+        text = f"layer {closed[0]} was taken: it is the only visible layer that carries a closed outline"
+        findings.append(Finding("layer-chosen", "note", text))
+        return closed
+    if closed:
+        message = f"closed outlines are on {len(closed)} layers: {', '.join(closed)}; say which with --layer"
+    else:
+        message = f"no visible layer carries a closed outline; say with --layer which to read: {', '.join(visible)}"
+    raise DrawingError(message, [Finding("layer-missing", "error", message)])
+
+
+def _unit(
+    drawing: DrawingFile, option: str | None, reading: Reading, findings: list[Finding]
+) -> tuple[str, str]:
+    header, words = drawing.header_unit()
+    if option is not None:
+        if header is not None and header != option:
+            text = f"the unit {option} was given, but the drawing's header says {header}; {option} was used"
+            findings.append(Finding("units-suspect", "note", text))
+        return option, "option"
+    if header is not None:
+        return header, "header"
+    width = height = 0.0
+    if reading.curves:
+        x0, y0, x1, y1 = Packed.of(reading.curves).box
+        width, height = x1 - x0, y1 - y0
+    sizes = "; ".join(f"{width:.6g} x {height:.6g} {unit}" for unit in MM_PER)
+    message = (
+        f"the drawing does not say its unit ({words}). What is drawn would measure {sizes}: pass the right one with "
+        "--units"
+    )
+    raise DrawingError(message, [Finding("units-missing", "error", message)])
+
+
+def _join_finding(join: Join, unit: str) -> Finding:
+    a, b = join.between
+    message = f"gap of {length_text(join.gap, unit)} joined at {place(join.at)} between {a} and {b}"
+    severity: Severity = "note" if join.gap * MM_PER[unit] <= DEFAULT_GAP_MM * (1 + 1e-9) else "warning"
+    return Finding("gap-joined", severity, message, at(join.at), handles((a, b)))
+
+
+def _with_skips(error: OutlineError, reading: Reading) -> OutlineError:
+    """Add what was left out of the layer: the usual reason why an outline does not close."""
+    left = [f for f in reading.findings if f.severity == "warning"]
+    if not left:
+        return error
+    message = "\n".join([str(error), "left out of the layer:", *(f"  {f.message}" for f in left)])
+    return OutlineError(message, (*error.findings, *left))

@@ -1,0 +1,88 @@
+"""Which of several outer boundaries make a section."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+
+import numpy as np
+
+from edgetally.curves.intersections import nearest
+from edgetally.errors import OutlineError, UsageError
+from edgetally.findings import Finding
+from edgetally.outline.records import Region
+from edgetally.outline.words import place
+
+EACH = "each"
+TOGETHER = "together"
+LISTED = 40
+
+_POINT = re.compile(r"\s*([-+]?[\d.]+(?:[eE][-+]?\d+)?)\s*,\s*([-+]?[\d.]+(?:[eE][-+]?\d+)?)\s*")
+
+
+def choose(regions: Sequence[Region], selection: str | None, unit: str) -> list[tuple[str, tuple[Region, ...]]]:
+    """Return named groups of regions, each one section. Regions are numbered from 1 in the order given.
+
+    `selection` is None (there must be one region), `each`, `together`, or what `--pick` was given: a number or a point
+    `X,Y` in or nearest to the one meant. Raises OutlineError (`several-outlines`) listing the regions where a choice is
+    needed, UsageError for a pick that names none.
+    """
+    if selection == EACH:
+        return [(str(k + 1), (region,)) for k, region in enumerate(regions)]
+    if selection == TOGETHER:
+        return [("1" if len(regions) == 1 else "together", tuple(regions))]
+    if selection is not None:
+        k = _picked(regions, selection, unit)
+        return [(str(k + 1), (regions[k],))]
+    if len(regions) == 1:
+        return [("1", tuple(regions))]
+    message = "\n".join([
+        f"the drawing holds {len(regions)} separate outer boundaries:",
+        *describe(regions, unit),
+        "say which make the section: --each for so many sections, --together for one section of several parts, or "
+        "--pick with a number or a point X,Y for one of them",
+    ])  # fmt: skip
+    x0, y0, _, _ = regions[0].box
+    raise OutlineError(message, [Finding("several-outlines", "error", message, (x0, y0))])
+
+
+def describe(regions: Sequence[Region], unit: str) -> list[str]:
+    """Return one line a region: number, place, size, area, voids; in the drawing's unit."""
+    lines = []
+    for k, region in enumerate(regions[:LISTED]):
+        x0, y0, x1, y1 = region.box
+        voids = f", {len(region.voids)} void{'s' if len(region.voids) > 1 else ''}" if region.voids else ""
+        lines.append(
+            f"  {k + 1}: lower left at {place(complex(x0, y0))}, {x1 - x0:.6g} x {y1 - y0:.6g} {unit}, "
+            f"area {region.area:.6g} {unit}^2{voids}"
+        )
+    if len(regions) > LISTED:
+        lines.append(f"  and {len(regions) - LISTED} more")
+    return lines
+
+
+def _picked(regions: Sequence[Region], pick: str, unit: str) -> int:
+    if pick.strip().isdigit():
+        number = int(pick)
+        if not 1 <= number <= len(regions):
+            raise UsageError(f"--pick {number}: the drawing holds the outer boundaries 1 to {len(regions)}")
+        return number - 1
+    match = _POINT.fullmatch(pick)
+    if match is None:
+        listed = "\n".join(describe(regions, unit))
+        raise UsageError(f"--pick {pick!r} is neither a number nor a point X,Y; the outer boundaries are:\n{listed}")
+    try:
+        p = complex(float(match.group(1)), float(match.group(2)))
+    except ValueError:
+        raise UsageError(f"--pick {pick!r} is not a point X,Y") from None
+    inside = [k for k, region in enumerate(regions) if _contains(region, p)]
+    if inside:  # the innermost, where one part lies in a void of another
+        return min(inside, key=lambda k: regions[k].outer.area)
+    return min(range(len(regions)), key=lambda k: min(nearest(c, p)[0] for c in regions[k].outer.curves))
+
+
+def _contains(region: Region, p: complex) -> bool:
+    x0, y0, x1, y1 = region.box
+    if not (x0 <= p.real <= x1 and y0 <= p.imag <= y1):
+        return False
+    return abs(float(region.outer.packed.turning(np.array([p]))[0])) > np.pi

@@ -1,0 +1,159 @@
+"""No two boundary curves may meet but where one ends and the next begins: decided on the true curves.
+
+Candidates come from a tree of the curves' boxes; straight pairs are decided in arrays, all others pair by pair.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+import shapely
+from numpy.typing import NDArray
+
+from edgetally.curves import Curve, Line, Packed
+from edgetally.curves.intersections import intersect, nearest, overlap
+from edgetally.errors import OutlineError
+from edgetally.findings import Finding
+from edgetally.outline.records import Loop
+from edgetally.outline.words import at, handles, place
+
+TOUCH = 1e-9
+"""Boundaries nearer than this share of the drawing's extent are taken to touch: a thousandth of a micron in a metre."""
+FOLD = 1e-9
+"""Two straight pieces that leave a corner at a smaller angle [rad] than this run over each other."""
+REPORTED = 12
+
+
+def refuse_crossings(loops: Sequence[Loop]) -> None:
+    """Raise OutlineError (`crossing`), with places and handles, where boundaries cross, touch or overlap.
+
+    Cost O(n log n) for n curves of which each has few others in its box.
+    """
+    curves = [curve for loop in loops for curve in loop.curves]
+    packed = Packed.of(curves)
+    boxes = packed.boxes
+    extent = float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max())
+    touch = TOUCH * extent
+    grown = boxes + [-touch, -touch, touch, touch]
+    shapes = shapely.box(*grown.T)
+    one, other = shapely.STRtree(shapes).query(shapes)
+    keep = one < other
+    one, other = one[keep], other[keep]
+
+    follower = _followers(loops)
+    adjacent = (follower[one] == other) | (follower[other] == one)
+    straight = ~packed.is_arc[one] & ~packed.is_arc[other]
+    suspects = np.concatenate([
+        np.flatnonzero(straight & adjacent)[_folds(packed, follower, one, other, straight & adjacent)],
+        np.flatnonzero(straight & ~adjacent)[_near(packed, one, other, straight & ~adjacent, touch)],
+        np.flatnonzero(~straight),
+    ])  # fmt: skip
+    run = _Run(loops, curves, packed)
+    found: list[tuple[complex, Curve, Curve]] = []
+    for k in np.sort(suspects):
+        i, j = int(one[k]), int(other[k])
+        z = run.contact(i, j, touch)
+        if z is not None:
+            found.append((z, curves[i], curves[j]))
+    if found:
+        raise _refusal(found)
+
+
+def _followers(loops: Sequence[Loop]) -> NDArray[np.intp]:
+    follower: list[int] = []
+    for loop in loops:
+        first, count = len(follower), len(loop.curves)
+        follower.extend(first + (k + 1) % count for k in range(count))
+    return np.array(follower, dtype=np.intp)
+
+
+def _folds(
+    packed: Packed,
+    follower: NDArray[np.intp],
+    one: NDArray[np.intp],
+    other: NDArray[np.intp],
+    which: NDArray[np.bool_],
+) -> NDArray[np.bool_]:
+    """Tell which of the chosen neighbouring straight pairs leave their common corner in one direction."""
+    i, j = one[which], other[which]
+    before = np.where(follower[i] == j, i, j)
+    after = np.where(follower[i] == j, j, i)
+    into, out = packed.start[before] - packed.end[before], packed.end[after] - packed.start[after]
+    turn = into.conj() * out
+    return (turn.real > 0) & (np.abs(turn.imag) <= FOLD * turn.real)
+
+
+def _near(
+    packed: Packed, one: NDArray[np.intp], other: NDArray[np.intp], which: NDArray[np.bool_], touch: float
+) -> NDArray[np.bool_]:
+    """Tell which of the chosen straight pairs cross or come nearer than `touch`."""
+    a, b = packed.start[one[which]], packed.end[one[which]]
+    c, d = packed.start[other[which]], packed.end[other[which]]
+
+    def side(p: NDArray[np.complex128], q: NDArray[np.complex128], r: NDArray[np.complex128]) -> NDArray[np.float64]:
+        return np.asarray(((q - p).conj() * (r - p)).imag)
+
+    crossing = (side(a, b, c) * side(a, b, d) < 0) & (side(c, d, a) * side(c, d, b) < 0)
+
+    def distance(
+        p: NDArray[np.complex128], q: NDArray[np.complex128], r: NDArray[np.complex128]
+    ) -> NDArray[np.float64]:
+        chord = q - p
+        t = np.clip(((r - p) * chord.conj()).real / np.abs(chord) ** 2, 0.0, 1.0)
+        return np.abs(p + t * chord - r)
+
+    clearance = np.minimum.reduce([distance(a, b, c), distance(a, b, d), distance(c, d, a), distance(c, d, b)])
+    return crossing | (clearance <= touch)
+
+
+class _Run:
+    """Where each curve lies along its loop, to tell a contact from the run of the boundary through a common corner."""
+
+    def __init__(self, loops: Sequence[Loop], curves: Sequence[Curve], packed: Packed) -> None:
+        self.curves = curves
+        self.length = packed.lengths
+        self.loop = np.repeat(np.arange(len(loops)), [len(loop.curves) for loop in loops])
+        total = np.cumsum(self.length)
+        first = np.cumsum([0] + [len(loop.curves) for loop in loops])[:-1]
+        before = total - self.length
+        self.along = before - before[first][self.loop]
+        self.perimeter = np.bincount(self.loop, weights=self.length)
+
+    def contact(self, i: int, j: int, touch: float) -> complex | None:
+        """Return a point where curves i and j meet other than by following each other, None where they do not."""
+        a, b = self.curves[i], self.curves[j]
+        for (t0, t1), _ in overlap(a, b, touch):
+            if abs(a.point(t1) - a.point(t0)) > 4 * touch:
+                return a.point(0.5 * (t0 + t1))
+        for t, u, z in intersect(a, b, touch):
+            if self.loop[i] != self.loop[j] or not self._runs_through(i, j, t, u, touch):
+                return z
+        return None
+
+    def _runs_through(self, i: int, j: int, t: float, u: float, touch: float) -> bool:
+        """Tell whether the boundary between z_i(t) and z_j(u) is so short, or so slim, that it is one corner."""
+        along_i = self.along[i] + t * self.length[i]
+        along_j = self.along[j] + u * self.length[j]
+        ahead = abs(along_j - along_i)
+        if min(ahead, self.perimeter[self.loop[i]] - ahead) <= 4 * touch:
+            return True
+        # two tangent neighbours part so slowly that rounding lets them cross again: the sliver between is no crossing
+        a, b = self.curves[i], self.curves[j]
+        corners = [(p, q) for p, q in ((0.0, 1.0), (1.0, 0.0)) if abs(a.point(p) - b.point(q)) <= touch]
+        return any(nearest(b, a.point(0.5 * (p + t)))[0] <= touch and abs(t - p) < 0.5 for p, _ in corners)
+
+
+def _refusal(found: list[tuple[complex, Curve, Curve]]) -> OutlineError:
+    findings = []
+    for z, a, b in found[:REPORTED]:
+        if a.source == b.source and a.source.handle:
+            which = f"{a.source} meets itself"
+        else:
+            which = f"{a.source} and {b.source} cross, touch or run over each other"
+        message = f"{which} at {place(z)}: an outline may not meet itself; correct it in the drawing"
+        findings.append(Finding("crossing", "error", message, at(z), handles((a.source, b.source))))
+    lines = [f.message for f in findings]
+    if len(found) > len(findings):
+        lines.append(f"and {len(found) - len(findings)} more such places")
+    return OutlineError("\n".join(lines), findings)

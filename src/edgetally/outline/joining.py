@@ -1,0 +1,277 @@
+"""Loose curves → closed loops: which end meets which, and what is done about the gap.
+
+An **end** is one of the two ends of an open curve; end 2i is the start of curve i, end 2i + 1 its end. Ends are paired
+nearest first and one to one, up to the join gap. Ends nearer than rounding are one point and their pairing is no join.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import shapely
+from numpy.typing import NDArray
+
+from edgetally.curves import Curve, Line
+from edgetally.curves.green import EPS
+from edgetally.errors import OutlineError
+from edgetally.findings import Finding
+from edgetally.outline.records import Join, Loop
+from edgetally.outline.words import at, enough_mm, handles, length_text, place
+from edgetally.units import MM_PER
+
+DEFAULT_GAP_MM = 0.01
+"""Joined without asking: below what a shop can see or a tolerance can name (common practice, no source)."""
+WIDEST_GAP_MM = 0.15
+"""Never joined, whatever is asked: ends that far apart are drawn apart."""
+NEIGHBOUR_SHARE = 0.1
+"""A join may not be wider than this share of the shorter of the two curves: it would be an edge of its own."""
+ROUNDING = 8 * EPS
+"""Ends nearer than this times the largest coordinate differ by the rounding of their own computation."""
+SLENDER = 4.0
+"""A curve whose length exceeds its chord by this factor is not turned about its ends to close a gap."""
+REPORTED = 12
+"""So many places are listed in a refusal; the rest is counted."""
+
+
+@dataclass(frozen=True, eq=False)
+class _Ends:
+    curves: Sequence[Curve]
+    z: NDArray[np.complex128]
+    rounding: float
+
+    def name(self, end: int) -> str:
+        return f"{self.curves[end // 2].source}"
+
+
+def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> tuple[list[Loop], list[Join]]:
+    """Join `curves` end to end into closed loops.
+
+    `gap` is the join gap and `unit` the name of the unit, both of the drawing. Every curve is used exactly once.
+    Cost O(n log n). Raises OutlineError for an open chain (`open-chain`), for three or more ends at a point
+    (`branch`), and for a join wider than a tenth of a neighbour (`gap-too-wide`).
+    """
+    loops, ends = _sort(curves)
+    if not ends.curves:
+        return loops, []
+    pairing = _pair(ends, gap)
+    if pairing.meeting:
+        raise _branch(ends, pairing.meeting, "at one point")
+    if pairing.crowded:
+        raise _branch(ends, pairing.crowded, f"within the join gap of {length_text(gap, unit)}")
+    partner = pairing.partner
+    _refuse_open(ends, partner, gap, unit)
+    joins: list[Join] = []
+    for chain in _walk(partner):
+        loop, joined = _weld(ends, chain, unit)
+        loops.append(loop)
+        joins.extend(joined)
+    return loops, joins
+
+
+def closes(curves: Sequence[Curve], gap: float) -> bool:
+    """Tell whether at least one closed loop can be made of `curves`, whatever else there is."""
+    loops, ends = _sort(curves)
+    if loops or not ends.curves:
+        return bool(loops)
+    partner = _pair(ends, gap).partner
+    seen = np.zeros(len(ends.curves), dtype=bool)
+    for first in range(0, len(partner), 2):
+        entry = first
+        while entry >= 0 and not seen[entry // 2]:
+            seen[entry // 2] = True
+            entry = int(partner[entry ^ 1])
+            if entry == first:
+                return True
+    return False
+
+
+def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], _Ends]:
+    """Part the curves that are closed by themselves from those with two ends."""
+    magnitude = max((max(abs(p.real), abs(p.imag)) for c in curves for p in (c.start, c.end)), default=0.0)
+    rounding = ROUNDING * magnitude
+    loops, pieces = [], []
+    for curve in curves:
+        if abs(curve.end - curve.start) > rounding:
+            pieces.append(curve)
+        elif curve.length > SLENDER * rounding:
+            loops.append(Loop((curve,)))
+    return loops, _Ends(pieces, np.array([p for c in pieces for p in (c.start, c.end)], dtype=complex), rounding)
+
+
+@dataclass(frozen=True, eq=False)
+class _Pairing:
+    """For every end its partner, −1 where it has none, and the groups of ends that are too many at one point."""
+
+    partner: NDArray[np.intp]
+    meeting: list[list[int]]
+    crowded: list[list[int]]
+
+
+def _pair(ends: _Ends, gap: float) -> _Pairing:
+    """Pair ends nearest first and one to one. `meeting`: three or more at one point; `crowded`: within the gap."""
+    points = shapely.points(ends.z.real, ends.z.imag)
+    one, other = shapely.STRtree(points).query(points, predicate="dwithin", distance=max(gap, ends.rounding))
+    keep = one < other
+    one, other = one[keep], other[keep]
+    distance = np.abs(ends.z[one] - ends.z[other])
+    # the two ends of one short piece are no pair; those of a curve that all but closes on itself are
+    length = np.array([c.length for c in ends.curves])
+    own = (one // 2 == other // 2) & (length[one // 2] < SLENDER * np.maximum(distance, ends.rounding))
+    one, other, distance = one[~own], other[~own], distance[~own]
+
+    partner = np.full(len(ends.z), -1, dtype=np.intp)
+    for k in np.lexsort((other, one, distance)):
+        i, j = one[k], other[k]
+        if partner[i] < 0 and partner[j] < 0:
+            partner[i], partner[j] = j, i
+    crowded = []
+    for k in np.flatnonzero((partner[one] < 0) != (partner[other] < 0)):
+        odd, near = (one[k], other[k]) if partner[one[k]] < 0 else (other[k], one[k])
+        crowded.append([int(odd), int(near), int(partner[near])])
+    same = distance <= ends.rounding
+    return _Pairing(partner, _groups(one[same], other[same], len(ends.z)), crowded)
+
+
+def _groups(one: NDArray[np.intp], other: NDArray[np.intp], count: int) -> list[list[int]]:
+    """Return the groups of three and more among ends that coincide pairwise."""
+    touching = np.bincount(np.concatenate([one, other]), minlength=count)
+    meeting: dict[int, set[int]] = {}
+    for i, j in zip(one, other, strict=True):
+        if touching[i] > 1 or touching[j] > 1:
+            group = meeting.get(int(i), {int(i)}) | meeting.get(int(j), {int(j)})
+            meeting.update(dict.fromkeys(group, group))
+    return list({min(group): sorted(group) for group in meeting.values()}.values())
+
+
+def _branch(ends: _Ends, groups: list[list[int]], how: str) -> OutlineError:
+    findings = []
+    for group in groups[:REPORTED]:
+        z = complex(ends.z[group[0]])
+        names = ", ".join(ends.name(e) for e in group[:6]) + (" …" if len(group) > 6 else "")
+        message = (
+            f"{len(group)} curve ends meet {how} at {place(z)}: {names}; an outline has two ends at each point: "
+            "remove inner lines and doubled curves, or move them to another layer"
+        )
+        sources = [ends.curves[e // 2].source for e in group]
+        findings.append(Finding("branch", "error", message, at(z), handles(sources)))
+    return _refusal(findings, len(groups))
+
+
+def _refuse_open(ends: _Ends, partner: NDArray[np.intp], gap: float, unit: str) -> None:
+    free = np.flatnonzero(partner < 0)
+    if not free.size:
+        return
+    points = shapely.points(ends.z[free].real, ends.z[free].imag)
+    findings = []
+    near: dict[int, tuple[int, float]] = {}
+    if len(free) > 1:
+        pairs, distance = shapely.STRtree(points).query_nearest(points, exclusive=True, return_distance=True)
+        for (i, j), d in zip(pairs.T, distance, strict=True):
+            near.setdefault(int(i), (int(j), float(d)))
+    done: set[frozenset[int]] = set()
+    for k, end in enumerate(free):
+        z, (j, d) = complex(ends.z[end]), near.get(k, (k, 0.0))
+        pair = frozenset((k, j))
+        if pair in done or (j != k and near.get(j, (k, 0))[0] != k and len(free) > 2):
+            continue
+        done.add(pair)
+        a, b = ends.curves[end // 2].source, ends.curves[free[j] // 2].source
+        joined = f"joined up to {length_text(gap, unit)}"
+        if j == k:
+            message = f"outline is open: {a} ends at {place(z)} and nothing else does"
+            remedy = "close it in the drawing"
+        else:
+            message = f"outline is open: gap {length_text(d, unit)} at {place(z)} between {a} and {b}, {joined}"
+            remedy = "close it in the drawing"
+            if d * MM_PER[unit] <= WIDEST_GAP_MM:
+                remedy += f" or pass --join-gap {enough_mm(d, unit)}"
+        findings.append(Finding("open-chain", "error", f"{message}; {remedy}", at(z), handles((a, b))))
+        if len(findings) == REPORTED:
+            break
+    raise _refusal(findings, (len(free) + 1) // 2)
+
+
+def _refusal(findings: list[Finding], count: int) -> OutlineError:
+    lines = [f.message for f in findings]
+    if count > len(lines):
+        lines.append(f"and {count - len(lines)} more such places")
+    return OutlineError("\n".join(lines), findings)
+
+
+def _walk(partner: NDArray[np.intp]) -> list[list[int]]:
+    """Return the closed chains, each as the list of the ends at which its curves are entered."""
+    seen = np.zeros(len(partner) // 2, dtype=bool)
+    chains = []
+    for first in range(0, len(partner), 2):
+        entry, chain = first, []
+        while not seen[entry // 2]:
+            seen[entry // 2] = True
+            chain.append(entry)
+            entry = int(partner[entry ^ 1])
+        if chain:
+            chains.append(chain)
+    return chains
+
+
+def _weld(ends: _Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
+    """Make the loop: every curve turned along the chain, and the ends at a gap brought to one point."""
+    curves = [ends.curves[e // 2] if e % 2 == 0 else ends.curves[e // 2].reversed() for e in chain]
+    joins: list[Join] = []
+    count = len(curves)
+    starts, stops = [c.start for c in curves], [c.end for c in curves]
+    for k in range(count):
+        n = (k + 1) % count
+        g = abs(stops[k] - curves[n].start)
+        if g <= ends.rounding:
+            continue
+        a, b = curves[k], curves[n]
+        shorter = min(a.length, b.length)
+        if g > NEIGHBOUR_SHARE * shorter:
+            z = stops[k]
+            message = (
+                f"the gap of {length_text(g, unit)} at {place(z)} between {a.source} and {b.source} is wider than a "
+                f"tenth of the shorter of them ({length_text(shorter, unit)}); close it in the drawing"
+            )
+            raise _refusal([Finding("gap-too-wide", "error", message, at(z), handles((a.source, b.source)))], 1)
+        swept = 0.5 * g * (a.length + b.length)
+        joins.append(Join(g, 0.5 * (a.end + b.start), (a.source, b.source), swept))
+        stops[k], starts[n] = _meeting_point(a, b)
+    welded: list[Curve] = []
+    for k, curve in enumerate(curves):
+        welded.append(_stretched(curve, starts[k], stops[k]))
+        following = starts[(k + 1) % count]
+        if abs(following - stops[k]) > ends.rounding:  # neither neighbour could give way
+            welded.append(Line(stops[k], following, curve.source))
+    return Loop(tuple(welded)), joins
+
+
+def _meeting_point(a: Curve, b: Curve) -> tuple[complex, complex]:
+    """Return where a ends and where b starts after the join: one point wherever one of them can give way.
+
+    A straight piece gives way to a curved one, whose radius stays as drawn; two alike meet half-way. A curve that all
+    but closes on itself stays, because turning it about so short a chord would move all of it.
+    """
+    stiff_a, stiff_b = _stiffness(a), _stiffness(b)
+    if stiff_a == stiff_b == 2:
+        return a.end, b.start
+    if stiff_a == stiff_b:
+        middle = 0.5 * (a.end + b.start)
+        return middle, middle
+    return (b.start, b.start) if stiff_a < stiff_b else (a.end, a.end)
+
+
+def _stiffness(curve: Curve) -> int:
+    if isinstance(curve, Line):
+        return 0
+    return 1 if curve.length < SLENDER * abs(curve.end - curve.start) else 2
+
+
+def _stretched(curve: Curve, start: complex, end: complex) -> Curve:
+    if start == curve.start and end == curve.end:
+        return curve
+    if isinstance(curve, Line):
+        return Line(start, end, curve.source)
+    factor = (end - start) / (curve.end - curve.start)
+    return curve.moved(factor, start - factor * curve.start)

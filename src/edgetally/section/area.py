@@ -1,0 +1,156 @@
+"""Everything that follows from the moments of the area: area to elastic moduli."""
+
+from __future__ import annotations
+
+from cmath import rect
+from dataclasses import dataclass
+from math import degrees
+
+from edgetally.curves import Packed
+from edgetally.curves.green import EPS, Moments, moments
+from edgetally.findings import Finding
+from edgetally.section.axes import Axes, principal_axes
+from edgetally.section.bounded import Bounded
+from edgetally.section.record import Property, Section
+from edgetally.units import MM_PER, Unit
+
+CUBIC_MM_PER_CUBIC_M = 1e9
+
+
+@dataclass(frozen=True, eq=False)
+class AreaResult:
+    """The properties by key, in the order of print; the centroid and the axes for the figure; and findings."""
+
+    properties: dict[str, Property]
+    centroid: complex
+    axes: Axes
+    findings: tuple[Finding, ...]
+
+
+def area_properties(section: Section, *, density: float | None = None) -> AreaResult:
+    """Derive all properties that are integrals over the area or extents of the boundary.
+
+    `density` in kg/m³ adds the mass per length. Lengths in the section's unit; angles in degrees.
+
+    The moments are integrated about the middle of the box first, which gives the centroid; about the centroid then,
+    and once more in the principal frame, because I₂ ≪ I₁ would be lost in (I_x + I_y)/2 − R. Elastic moduli are I over
+    the distance to the extreme fibre of the true curves. Each number's error follows from the bounds of the moments
+    (`curves.green.moments`) through the formulas (`Bounded`).
+    """
+    sums = _Sums(section)
+    unit, scale = section.unit, section.size
+    out: dict[str, Property] = {}
+
+    def give(key: str, number: Bounded, power: int, *, relative_to: float = 0.0) -> None:
+        out[key] = Property(key, number.value, Unit(unit, power), number.relative(relative_to))
+
+    area = sums.area
+    give("area", area, 2)
+    outer = sum(region.outer.perimeter for region in section.regions)
+    total = sum(loop.perimeter for loop in section.loops)
+    pieces = len(section.packed)
+    give("outer_perimeter", Bounded(outer, 2 * pieces * sums.shift + 4 * EPS * outer), 1)
+    give("total_perimeter", Bounded(total, 2 * pieces * sums.shift + 4 * EPS * total), 1)
+    extents = sums.central_extents
+    give("width", extents.right + extents.left, 1)
+    give("height", extents.top + extents.bottom, 1)
+    give("centroid_x", sums.centroid_x, 1, relative_to=scale)
+    give("centroid_y", sums.centroid_y, 1, relative_to=scale)
+
+    second_x, second_y, product = sums.central
+    polar = second_x + second_y
+    give("second_moment_x", second_x, 4)
+    give("second_moment_y", second_y, 4)
+    give("product_of_inertia", product, 4, relative_to=0.5 * polar.value)
+    give("polar_moment", polar, 4)
+
+    axes = principal_axes(second_x, second_y, product)
+    turned = sums.in_frame(rect(1.0, axes.angle.value))
+    first, second = Bounded(turned.m02, turned.slack["m02"]), Bounded(turned.m20, turned.slack["m20"])
+    if axes.arbitrary and first.value < second.value:
+        first, second = second, first
+    give("principal_moment_1", first, 4)
+    give("principal_moment_2", second, 4)
+    turn_degrees = degrees(1.0)
+    angle = Bounded(degrees(axes.angle.value), degrees(axes.angle.slack))
+    out["principal_angle"] = Property(
+        "principal_angle", angle.value, Unit("deg"), angle.relative(turn_degrees)
+    )
+
+    x, y = sums.centroid_x, sums.centroid_y
+    origin_x, origin_y = second_x + area * y * y, second_y + area * x * x
+    give("second_moment_x_origin", origin_x, 4)
+    give("second_moment_y_origin", origin_y, 4)
+    about_origin = product + area * x * y
+    give("product_of_inertia_origin", about_origin, 4, relative_to=0.5 * (origin_x + origin_y).value)
+
+    for key, moment in (("x", second_x), ("y", second_y), ("1", first), ("2", second)):
+        give(f"radius_of_gyration_{key}", (moment / area).root(), 1)
+    give("elastic_modulus_x_top", second_x / extents.top, 3)
+    give("elastic_modulus_x_bottom", second_x / extents.bottom, 3)
+    give("elastic_modulus_y_left", second_y / extents.left, 3)
+    give("elastic_modulus_y_right", second_y / extents.right, 3)
+    own = sums.extents(rect(1.0, axes.angle.value))
+    give("elastic_modulus_1_positive", first / own.top, 3)
+    give("elastic_modulus_1_negative", first / own.bottom, 3)
+    give("elastic_modulus_2_positive", second / own.right, 3)
+    give("elastic_modulus_2_negative", second / own.left, 3)
+
+    if density is not None:
+        square_mm = MM_PER[unit] ** 2
+        mass = Bounded(area.value * square_mm * density * 1e-6, area.slack * square_mm * density * 1e-6)
+        out["mass_per_length"] = Property("mass_per_length", mass.value, Unit("kg/m"), mass.relative())
+    findings: tuple[Finding, ...] = ()
+    if axes.arbitrary:
+        text = "the principal moments are equal: every axis through the centroid is principal, and the angle is given as 0"
+        findings = (Finding("axes-arbitrary", "note", text),)
+    return AreaResult(out, complex(x.value, y.value), axes, findings)
+
+
+@dataclass(frozen=True, slots=True)
+class Extents:
+    """Distances from the centroid to the extreme fibres along the axes of a frame, all positive."""
+
+    right: Bounded
+    top: Bounded
+    left: Bounded
+    bottom: Bounded
+
+
+class _Sums:
+    """The moments of one section, each integrated where it loses nothing."""
+
+    def __init__(self, section: Section) -> None:
+        self._middle = section.middle
+        self._packed = section.packed.framed(section.middle)
+        # the coordinates' own rounding, and that of the change of frame
+        self.shift = section.input_rounding + EPS * section.size
+        rough = self._moments(self._packed)
+        mx = Bounded(rough.m10, rough.slack["m10"]) / Bounded(rough.m00, rough.slack["m00"])
+        my = Bounded(rough.m01, rough.slack["m01"]) / Bounded(rough.m00, rough.slack["m00"])
+        self._centroid = complex(mx.value, my.value)
+        self.centroid_x = Bounded(self._middle.real) + mx
+        self.centroid_y = Bounded(self._middle.imag) + my
+        self._wander = max(mx.slack, my.slack)
+        fine = self.in_frame(1.0)
+        self.area = Bounded(fine.m00, fine.slack["m00"])
+        self.central = (
+            Bounded(fine.m02, fine.slack["m02"]),
+            Bounded(fine.m20, fine.slack["m20"]),
+            Bounded(fine.m11, fine.slack["m11"]),
+        )
+        self.central_extents = self.extents(1.0)
+
+    def _moments(self, packed: Packed) -> Moments:
+        return moments(packed, input_rounding=self.shift)
+
+    def in_frame(self, turn: complex) -> Moments:
+        """Integrate about the centroid, axes turned by the unit number `turn`."""
+        return self._moments(self._packed.framed(self._centroid, turn))
+
+    def extents(self, turn: complex) -> Extents:
+        """Return the distances from the centroid to the extreme fibres along axes turned by `turn`."""
+        packed = self._packed.framed(self._centroid)
+        slack = self.shift + self._wander
+        reach = [Bounded(float(packed.supports(turn * d).max()), slack) for d in (1, 1j, -1, -1j)]
+        return Extents(*reach)
