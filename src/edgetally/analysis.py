@@ -52,6 +52,17 @@ class SectionResult:
     def name(self) -> str:
         return self.section.name
 
+    def natural_scale(self, key: str) -> float:
+        """Return what an error is relative to where a value may vanish: the size for coordinates, (I_x + I_y)/2 for
+        products of inertia, 0 for all others."""
+        if key in ("centroid_x", "centroid_y"):
+            return self.section.size * length_factor(self.section.unit, self.out_unit)
+        if key.startswith("product_of_inertia"):
+            ending = key.removeprefix("product_of_inertia")
+            x, y = (self.properties[f"second_moment_{axis}{ending}"].value or 0.0 for axis in "xy")
+            return 0.5 * (x + y)
+        return 0.0
+
     @property
     def region_areas(self) -> list[tuple[float, int]]:
         """The area, in the unit of the results, and the number of voids of every region."""

@@ -33,7 +33,7 @@ def number_text(value: float, digits: int = DIGITS) -> str:
 def mantissa_and_power(text: str) -> tuple[str, int]:
     """Split what number_text wrote into the digits and the power of ten."""
     mantissa, _, power = text.partition("e")
-    return mantissa, int(power or 0)
+    return mantissa, int(power.replace("−", "-") or 0)
 
 
 def value_text(prop: Property, scale: float = 0.0) -> str:

@@ -11,10 +11,9 @@ from edgetally.curves.green import EPS, Moments, moments
 from edgetally.findings import Finding
 from edgetally.section.axes import Axes, principal_axes
 from edgetally.section.bounded import Bounded
+from edgetally.section.kinds import unit_of
 from edgetally.section.record import Property, Section
-from edgetally.units import MM_PER, Unit
-
-CUBIC_MM_PER_CUBIC_M = 1e9
+from edgetally.units import MM_PER
 
 
 @dataclass(frozen=True, eq=False)
@@ -41,65 +40,61 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
     unit, scale = section.unit, section.size
     out: dict[str, Property] = {}
 
-    def give(key: str, number: Bounded, power: int, *, relative_to: float = 0.0) -> None:
-        out[key] = Property(key, number.value, Unit(unit, power), number.relative(relative_to))
+    def give(key: str, number: Bounded, *, relative_to: float = 0.0) -> None:
+        out[key] = Property(key, number.value, unit_of(key, unit), number.relative(relative_to))
 
     area = sums.area
-    give("area", area, 2)
+    give("area", area)
     outer = sum(region.outer.perimeter for region in section.regions)
     total = sum(loop.perimeter for loop in section.loops)
     pieces = len(section.packed)
-    give("outer_perimeter", Bounded(outer, 2 * pieces * sums.shift + 4 * EPS * outer), 1)
-    give("total_perimeter", Bounded(total, 2 * pieces * sums.shift + 4 * EPS * total), 1)
+    give("outer_perimeter", Bounded(outer, 2 * pieces * sums.shift + 4 * EPS * outer))
+    give("total_perimeter", Bounded(total, 2 * pieces * sums.shift + 4 * EPS * total))
     extents = sums.central_extents
-    give("width", extents.right + extents.left, 1)
-    give("height", extents.top + extents.bottom, 1)
-    give("centroid_x", sums.centroid_x, 1, relative_to=scale)
-    give("centroid_y", sums.centroid_y, 1, relative_to=scale)
+    give("width", extents.right + extents.left)
+    give("height", extents.top + extents.bottom)
+    give("centroid_x", sums.centroid_x, relative_to=scale)
+    give("centroid_y", sums.centroid_y, relative_to=scale)
 
     second_x, second_y, product = sums.central
     polar = second_x + second_y
-    give("second_moment_x", second_x, 4)
-    give("second_moment_y", second_y, 4)
-    give("product_of_inertia", product, 4, relative_to=0.5 * polar.value)
-    give("polar_moment", polar, 4)
+    give("second_moment_x", second_x)
+    give("second_moment_y", second_y)
+    give("product_of_inertia", product, relative_to=0.5 * polar.value)
+    give("polar_moment", polar)
 
     axes = principal_axes(second_x, second_y, product)
     turned = sums.in_frame(rect(1.0, axes.angle.value))
     first, second = Bounded(turned.m02, turned.slack["m02"]), Bounded(turned.m20, turned.slack["m20"])
     if axes.arbitrary and first.value < second.value:
         first, second = second, first
-    give("principal_moment_1", first, 4)
-    give("principal_moment_2", second, 4)
-    turn_degrees = degrees(1.0)
+    give("principal_moment_1", first)
+    give("principal_moment_2", second)
     angle = Bounded(degrees(axes.angle.value), degrees(axes.angle.slack))
-    out["principal_angle"] = Property(
-        "principal_angle", angle.value, Unit("deg"), angle.relative(turn_degrees)
-    )
+    give("principal_angle", angle, relative_to=degrees(1.0))
 
     x, y = sums.centroid_x, sums.centroid_y
     origin_x, origin_y = second_x + area * y * y, second_y + area * x * x
-    give("second_moment_x_origin", origin_x, 4)
-    give("second_moment_y_origin", origin_y, 4)
+    give("second_moment_x_origin", origin_x)
+    give("second_moment_y_origin", origin_y)
     about_origin = product + area * x * y
-    give("product_of_inertia_origin", about_origin, 4, relative_to=0.5 * (origin_x + origin_y).value)
+    give("product_of_inertia_origin", about_origin, relative_to=0.5 * (origin_x + origin_y).value)
 
     for key, moment in (("x", second_x), ("y", second_y), ("1", first), ("2", second)):
-        give(f"radius_of_gyration_{key}", (moment / area).root(), 1)
-    give("elastic_modulus_x_top", second_x / extents.top, 3)
-    give("elastic_modulus_x_bottom", second_x / extents.bottom, 3)
-    give("elastic_modulus_y_left", second_y / extents.left, 3)
-    give("elastic_modulus_y_right", second_y / extents.right, 3)
+        give(f"radius_of_gyration_{key}", (moment / area).root())
+    give("elastic_modulus_x_top", second_x / extents.top)
+    give("elastic_modulus_x_bottom", second_x / extents.bottom)
+    give("elastic_modulus_y_left", second_y / extents.left)
+    give("elastic_modulus_y_right", second_y / extents.right)
     own = sums.extents(rect(1.0, axes.angle.value))
-    give("elastic_modulus_1_positive", first / own.top, 3)
-    give("elastic_modulus_1_negative", first / own.bottom, 3)
-    give("elastic_modulus_2_positive", second / own.right, 3)
-    give("elastic_modulus_2_negative", second / own.left, 3)
+    give("elastic_modulus_1_positive", first / own.top)
+    give("elastic_modulus_1_negative", first / own.bottom)
+    give("elastic_modulus_2_positive", second / own.right)
+    give("elastic_modulus_2_negative", second / own.left)
 
     if density is not None:
         square_mm = MM_PER[unit] ** 2
-        mass = Bounded(area.value * square_mm * density * 1e-6, area.slack * square_mm * density * 1e-6)
-        out["mass_per_length"] = Property("mass_per_length", mass.value, Unit("kg/m"), mass.relative())
+        give("mass_per_length", area * Bounded(square_mm * density * 1e-6))
     findings: tuple[Finding, ...] = ()
     if axes.arbitrary:
         text = "the principal moments are equal: every axis through the centroid is principal, and the angle is given as 0"

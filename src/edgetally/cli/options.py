@@ -1,0 +1,95 @@
+"""Options that mean the same in every command, and how they reach `analyse`."""
+
+from __future__ import annotations
+
+import sys
+import tempfile
+from collections.abc import Callable
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, TypeVar
+
+import click
+
+from edgetally.errors import UsageError
+
+if TYPE_CHECKING:
+    from edgetally.analysis import Analysis
+
+Command = TypeVar("Command", bound=Callable[..., Any])
+
+EXIT_OF = {None: 0, "note": 0, "warning": 1, "error": 2}
+
+_READING = [
+    click.option(
+        "--layer",
+        multiple=True,
+        metavar="PATTERN",
+        help="Layer to read; repeatable, shell-style wildcards, any case. Without it: the only visible layer that "
+        "carries a closed outline.",
+    ),
+    click.option(
+        "--units",
+        type=click.Choice(["mm", "cm", "m", "in", "ft"]),
+        help="Length unit of the drawing; overrides its header.",
+    ),
+    click.option("--scale", type=float, default=1.0, show_default=True, help="Drawn length × N = real length."),
+    click.option(
+        "--join-gap",
+        default="0.01mm",
+        show_default=True,
+        metavar="LENGTH",
+        help="Largest gap between ends that is joined, with its unit; at most 0.15mm.",
+    ),
+    click.option("--each", is_flag=True, help="Several outer boundaries are so many sections."),
+    click.option("--together", is_flag=True, help="Several outer boundaries are one section of several parts."),
+    click.option("--pick", metavar="WHICH", help="Take one outer boundary: its number, or a point X,Y in or near it."),
+    click.option("--out-units", type=click.Choice(["mm", "cm", "m", "in"]), help="Unit of the results."),
+    click.option(
+        "--symbols",
+        type=click.Choice(["plain", "en", "us"]),
+        default="plain",
+        show_default=True,
+        help="Symbols beside the names: plain, EN 1993 style, US style.",
+    ),
+    click.option(
+        "--density",
+        metavar="VALUE",
+        help="kg/m³, or steel, aluminium, stainless: adds the mass per length.",
+    ),
+]
+
+
+def reading_options(command: Command) -> Command:
+    """Add the options that say how a drawing is read and in what terms the results are given."""
+    for option in reversed(_READING):
+        command = option(command)
+    return command
+
+
+def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
+    """Turn the three options into what `analyse` takes. Raises UsageError where they contradict."""
+    given = [name for name, on in (("--each", each), ("--together", together), ("--pick", pick is not None)) if on]
+    if len(given) > 1:
+        raise UsageError(f"{' and '.join(given)} contradict each other: give one of them")
+    return "each" if each else "together" if together else pick
+
+
+def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
+    """Analyse one drawing as the command's reading options say; `-` is standard input."""
+    from edgetally.analysis import analyse
+
+    settings = {
+        "layer": list(options["layer"]) or None,
+        "units": options["units"],
+        "scale": options["scale"],
+        "join_gap": options["join_gap"],
+        "select": selection(each=options["each"], together=options["together"], pick=options["pick"]),
+        "out_units": options["out_units"],
+        "density": options["density"],
+    }
+    if drawing != "-":
+        return analyse(drawing, **settings)
+    with tempfile.TemporaryDirectory() as folder:
+        copy = Path(folder) / "standard-input.dxf"
+        copy.write_bytes(sys.stdin.buffer.read())
+        return analyse(copy, name="standard input", **settings)

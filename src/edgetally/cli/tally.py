@@ -1,0 +1,85 @@
+"""`edgetally tally`: the properties on the terminal, or for another program."""
+
+from __future__ import annotations
+
+import json
+import sys
+from collections.abc import Iterable, Iterator
+from typing import Any
+
+import click
+
+from edgetally.cli.options import EXIT_OF, analysed, reading_options
+from edgetally.errors import EdgetallyError, UsageError
+
+
+@click.command(
+    epilog="Example: edgetally tally sample_drawings/bracket.dxf --layer OUTLINE --out-units cm --density steel"
+)
+@click.argument("drawings", nargs=-1, required=True, metavar="DRAWING...")
+@reading_options
+@click.option("--json", "as_json", is_flag=True, help="The JSON document; of several drawings one a line.")
+@click.option("--csv", "as_csv", is_flag=True, help="A table with one row a section.")
+@click.option("--svg", type=click.Path(), metavar="FILE", help="Write the figure of the section too.")
+def tally(drawings: tuple[str, ...], as_json: bool, as_csv: bool, svg: str | None, **options: Any) -> int:
+    """Print the properties of the section on a layer of each DRAWING; `-` reads standard input."""
+    if as_json and as_csv:
+        raise UsageError("--json and --csv contradict each other: give one of them")
+    if svg is not None:
+        if len(drawings) > 1:
+            raise UsageError("--svg takes one drawing at a time")
+        from edgetally.output.files import check_target
+
+        check_target(svg, drawings[0])
+    code = 0
+    rows: list[list[str]] = []
+    csv_units: set[str] = set()
+    for number, drawing in enumerate(_with_progress(drawings)):
+        try:
+            analysis = analysed(drawing, options)
+        except EdgetallyError as error:
+            if len(drawings) == 1:
+                raise
+            print(f"edgetally: {drawing}: {error}", file=sys.stderr)
+            code = 2
+            continue
+        code = max(code, EXIT_OF[analysis.severity])
+        if as_json:
+            print(json.dumps(analysis.to_dict(), ensure_ascii=False, indent=2 if len(drawings) == 1 else None))
+        elif as_csv:
+            from edgetally.output.table import csv_rows
+
+            rows += csv_rows(analysis)
+            csv_units.add(analysis.out_unit)
+        else:
+            from edgetally.output.table import analysis_text
+
+            print(("\n" if number else "") + analysis_text(analysis, options["symbols"]))
+        if svg is not None:
+            _write_svg(svg, analysis, options["symbols"])
+    if as_csv and rows:
+        if len(csv_units) > 1:
+            raise UsageError("the drawings have different units: say with --out-units which the table is to have")
+        from edgetally.output.table import csv_header, csv_text
+
+        print(csv_text([csv_header(csv_units.pop()), *rows]), end="")
+    return code
+
+
+def _write_svg(svg: str, analysis: Any, symbols: Any) -> None:
+    from edgetally.output.files import write_whole
+    from edgetally.output.svg import figure_svg
+
+    if len(analysis.sections) > 1:
+        raise UsageError("--svg draws one section: say which with --pick, or --together")
+    write_whole(svg, figure_svg(analysis.sections[0], symbols).encode())
+
+
+def _with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
+    """Yield the drawings; on a terminal, and where there are several, with a bar on stderr."""
+    if len(drawings) == 1 or not sys.stderr.isatty():
+        yield from drawings
+        return
+    with click.progressbar(drawings, label="drawings", file=sys.stderr) as bar:
+        items: Iterable[str] = bar
+        yield from items

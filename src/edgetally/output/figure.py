@@ -1,0 +1,260 @@
+"""The picture of a section: outline, centroid, both pairs of axes, extreme fibres, scale bar.
+
+Labels of axes stand in a margin that the section never reaches, each on the side of its axis that is away from the
+nearest other one, so that nothing overlaps whatever the section's proportions.
+"""
+
+from __future__ import annotations
+
+from cmath import phase, rect
+from collections.abc import Iterable
+from dataclasses import dataclass
+from math import cos, degrees, floor, inf, log10, pi, sin
+from typing import TYPE_CHECKING
+
+from edgetally.curves import Arc, Curve, Line
+from edgetally.output.pens import (
+    ACCENT,
+    ACCENT_MARK,
+    DRAWING_AXIS,
+    HOLLOW_MARK,
+    INK,
+    MATERIAL,
+    MUTED,
+    OPEN_MARK,
+    PRINCIPAL_AXIS,
+    SOLID_MARK,
+    THIN,
+    THIN_ACCENT,
+    Item,
+    Label,
+    Path,
+    Picture,
+    arrowhead,
+    disc,
+    polygon,
+    stroke,
+)
+from edgetally.output.symbols import AXES, SymbolSet
+from edgetally.units import length_factor
+
+if TYPE_CHECKING:
+    from edgetally.analysis import SectionResult
+
+POINTS_PER_MM = 72.0 / 25.4
+MARGIN = 34.0
+"""Room [pt] around the section for the ends of the axes and their labels."""
+STRIP = 34.0
+"""Room [pt] below for the scale bar and the key of the marks."""
+NO_ARC = 1.0
+"""Below this angle [degrees] the arc from x to axis 1 would be smaller than its own arrowhead."""
+SAME_FIBRE = 2.0
+"""Where the principal axes are turned by less than this [degrees], their extreme fibres are not marked twice."""
+
+
+@dataclass(frozen=True, slots=True)
+class Scale:
+    """A scale of ISO 5455, `paper`:`real`, one of them 1."""
+
+    paper: float
+    real: float
+
+    @property
+    def factor(self) -> float:
+        return self.paper / self.real
+
+    def __str__(self) -> str:
+        return f"{self.paper:g}:{self.real:g}"
+
+
+def round_scale(most: float) -> Scale:
+    """Return the largest of 1, 2, 5 · 10ⁿ : 1 and 1 : 1, 2, 5 · 10ⁿ that is not above `most`."""
+    decade = 10.0 ** floor(log10(most))
+    enlarged = max((s * decade for s in (1.0, 2.0, 5.0) if s * decade <= most * (1 + 1e-9)), default=decade)
+    if enlarged >= 1.0:
+        return Scale(round(enlarged), 1)
+    reduced = min(s for k in (-1, 0, 1) for s in (1 / decade * 10.0**k, 2 / decade * 10.0**k, 5 / decade * 10.0**k)
+                  if s >= 1.0 and 1 / s <= most * (1 + 1e-9))  # fmt: skip
+    return Scale(1, round(reduced))
+
+
+def section_picture(section: SectionResult, width: float, height: float, symbols: SymbolSet = "plain") -> Picture:
+    """Tell the picture of a section on `width` × `height` points."""
+    return _Figure(section, width, height, symbols).picture()
+
+
+class _Figure:
+    def __init__(self, section: SectionResult, width: float, height: float, symbols: SymbolSet) -> None:
+        self.section = section
+        self.width, self.height = width, height
+        self.letters = AXES[symbols]
+        self.theta = section.result.axes.angle.value
+        self.arbitrary = section.result.axes.arbitrary
+        x0, y0, x1, y1 = section.section.packed.box
+        self.mm = length_factor(section.section.unit, "mm")
+        room_x, room_y = width - 2 * MARGIN, height - STRIP - 2 * MARGIN
+        wanted = [room / (extent * self.mm * POINTS_PER_MM) for room, extent in ((room_x, x1 - x0), (room_y, y1 - y0))]
+        self.scale = round_scale(min(wanted))
+        self.points = self.scale.factor * self.mm * POINTS_PER_MM  # paper points for one unit of the section
+        middle = complex(0.5 * (x0 + x1), 0.5 * (y0 + y1))
+        self.shift = complex(0.5 * width, STRIP + 0.5 * (height - STRIP)) - middle * self.points
+        self.centre = self.paper(section.result.centroid)
+
+    def paper(self, z: complex) -> complex:
+        return z * self.points + self.shift
+
+    def picture(self) -> Picture:
+        items: list[Item] = [
+            self._material(),
+            *self._axes(),
+            *self._extreme_fibres(),
+            *self._centroid(),
+            *self._scale_bar(),
+            *self._key(),
+        ]
+        return Picture(self.width, self.height, tuple(items))
+
+    def _material(self) -> Path:
+        runs = tuple(
+            tuple(curve.moved(complex(self.points), self.shift) for curve in loop.curves)
+            for loop in self.section.section.loops
+        )
+        return Path(runs, MATERIAL, closed=True)
+
+    # ------------------------------------------------------------------ axes
+    def _border(self, direction: complex) -> complex:
+        """Return where the ray from the centroid leaves the room of the axes."""
+        inset = 6.0
+        reach = inf
+        if abs(direction.real) > 1e-12:
+            limit = self.width - inset if direction.real > 0 else inset
+            reach = min(reach, (limit - self.centre.real) / direction.real)
+        if abs(direction.imag) > 1e-12:
+            limit = self.height - inset if direction.imag > 0 else STRIP + inset
+            reach = min(reach, (limit - self.centre.imag) / direction.imag)
+        return self.centre + reach * direction
+
+    def _axes(self) -> Iterable[Item]:
+        drawing = [(0.0, self.letters.x), (pi / 2, self.letters.y)]
+        principal = [(self.theta, self.letters.first), (self.theta + pi / 2, self.letters.second)]
+        for angle, letter in drawing:
+            yield from self._axis(angle, letter, [a for a, _ in principal], principal=False)
+        for angle, letter in principal:
+            yield from self._axis(angle, letter, [a for a, _ in drawing], principal=True)
+        yield from self._angle_arc()
+
+    def _axis(
+        self, angle: float, letter: str, others: list[float], *, principal: bool
+    ) -> Iterable[Item]:
+        direction = rect(1.0, angle)
+        tip, tail = self._border(direction), self._border(-direction)
+        yield stroke(tail, tip, PRINCIPAL_AXIS if principal else DRAWING_AXIS)
+        yield arrowhead(tip, direction, ACCENT_MARK if principal else SOLID_MARK)
+        # the nearest other ray decides on which side the letter stands
+        turns = [((o + k * pi / 2 - angle + pi) % (2 * pi)) - pi for o in others for k in range(4)]
+        nearest = min(turns, key=abs)
+        side = (1.0 if principal else -1.0) if abs(nearest) < 1e-9 else (-1.0 if nearest > 0 else 1.0)
+        normal = 1j * direction * side
+        at = tip - 9.0 * direction + 7.0 * normal - complex(0.0, 2.9)
+        margin = 7.0
+        at = complex(min(max(at.real, margin), self.width - margin), min(max(at.imag, STRIP + 2), self.height - 9.0))
+        yield Label(at, letter, 9.0, "middle", bold=principal, colour=ACCENT if principal else INK)
+
+    def _angle_arc(self) -> Iterable[Item]:
+        if self.arbitrary or abs(degrees(self.theta)) < NO_ARC:
+            return
+        ends = [abs(self._border(rect(1.0, a)) - self.centre) for a in (0.0, self.theta)]
+        radius = max(0.86 * min(ends), 14.0)
+        arc = Arc.from_centre(self.centre, radius, 0.0, self.theta)
+        yield Path(((arc,),), THIN_ACCENT)
+        sense = 1j if self.theta > 0 else -1j
+        # the head lies along the chord of its own length, not along the tangent at its tip
+        lean = rect(1.0, -2.5 / radius * (1 if self.theta > 0 else -1))
+        yield arrowhead(arc.end, rect(1.0, self.theta) * sense * lean, ACCENT_MARK, size=4.5)
+        wide = radius * abs(self.theta) > 22.0
+        turn = 0.5 * self.theta if wide else self.theta + (9.0 / radius) * (1 if self.theta > 0 else -1)
+        at = self.centre + rect(radius + (8.0 if wide else 0.0), turn) - complex(0.0, 3.0)
+        yield Label(at, "θ", 9.0, "middle", colour=ACCENT)
+
+    # ------------------------------------------------------------------ marks
+    def _extreme_fibres(self) -> Iterable[Item]:
+        yield from self._fibre_marks((1.0, 1j, -1.0, -1j), hollow=False)
+        if not self.arbitrary and abs(degrees(self.theta)) % 90.0 > SAME_FIBRE and (
+            90.0 - abs(degrees(self.theta)) % 90.0 > SAME_FIBRE
+        ):
+            turn = rect(1.0, self.theta)
+            yield from self._fibre_marks((turn, 1j * turn, -turn, -1j * turn), hollow=True)
+
+    def _fibre_marks(self, directions: Iterable[complex], *, hollow: bool) -> Iterable[Item]:
+        for direction in directions:
+            tip = self.paper(_extreme_point(self.section, direction)) + 1.2 * direction
+            size = 5.5
+            base = tip + size * direction
+            points = [tip, base + 0.42j * size * direction, base - 0.42j * size * direction]
+            yield polygon(points, HOLLOW_MARK if hollow else SOLID_MARK)
+
+    def _centroid(self) -> Iterable[Item]:
+        yield from centroid_mark(self.centre)
+
+    # ------------------------------------------------------------------ strip
+    def _scale_bar(self) -> Iterable[Item]:
+        unit = self.section.out_unit
+        per_unit = self.points * length_factor(unit, self.section.section.unit)
+        most = 120.0 / per_unit
+        decade = 10.0 ** floor(log10(most))
+        real = max(s * decade for s in (1.0, 2.0, 5.0) if s * decade <= most)
+        left, y, length = 8.0, 9.0, real * per_unit
+        yield polygon(
+            [complex(left, y), complex(left + length / 2, y), complex(left + length / 2, y + 3), complex(left, y + 3)],
+            SOLID_MARK,
+        )
+        yield polygon(
+            [complex(left, y), complex(left + length, y), complex(left + length, y + 3), complex(left, y + 3)], THIN
+        )
+        text = f"{real:g} {unit}   scale {self.scale}"
+        yield Label(complex(left + length + 5.0, y - 1.2), text, 7.5)
+
+    def _key(self) -> Iterable[Item]:
+        """The key of the marks, above the scale bar."""
+        x, y = 8.0, 23.0
+        letters = self.letters
+        entries = [("solid", f"extreme fibre {letters.x}, {letters.y}")]
+        if not self.arbitrary:
+            entries.append(("hollow", f"{letters.first}, {letters.second}"))
+        entries.insert(0, ("centroid", "centroid"))
+        for kind, text in entries:
+            if kind == "centroid":
+                yield from centroid_mark(complex(x + 4.0, y + 1.5), 2.8)
+            else:
+                points = [complex(x + 4.0, y - 1.5), complex(x + 6.3, y + 4.0), complex(x + 1.7, y + 4.0)]
+                yield polygon(points, HOLLOW_MARK if kind == "hollow" else SOLID_MARK)
+            yield Label(complex(x + 10.0, y - 1.2), text, 7.0, colour=MUTED)
+            x += 20.0 + 3.5 * len(text)  # about the width of so many letters
+
+
+def centroid_mark(z: complex, radius: float = 3.2) -> Iterable[Item]:
+    """The mark of a centre of gravity: a disc with two opposite quarters filled."""
+    yield disc(z, radius, OPEN_MARK)
+    for quarter in (0.0, pi):
+        arc = Arc.from_centre(z, radius, quarter, pi / 2)
+        yield Path(((arc, Line(arc.end, z), Line(z, arc.start)),), SOLID_MARK, closed=True)
+
+
+def _extreme_point(section: SectionResult, direction: complex) -> complex:
+    """Return where the outline reaches farthest in a direction: the middle of the flat there, if it is one."""
+    packed = section.section.packed
+    reach = packed.supports(direction)
+    curves = [curve for loop in section.section.loops for curve in loop.curves]
+    near = [k for k in range(len(curves)) if reach[k] >= reach.max() - 1e-9 * section.section.size]
+    best = max(near, key=lambda k: _run_along(curves[k], direction))
+    curve = curves[best]
+    if abs(_run_along(curve, direction)) > 0.0 and abs(
+        ((curve.end - curve.start) * direction.conjugate()).real
+    ) <= 1e-9 * section.section.size and not isinstance(curve, Arc):
+        return 0.5 * (curve.start + curve.end)
+    return curve.point(curve.support(direction)[1])
+
+
+def _run_along(curve: Curve, direction: complex) -> float:
+    """How far a curve runs across a direction."""
+    return abs(((curve.end - curve.start) * direction.conjugate()).imag)
