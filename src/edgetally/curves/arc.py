@@ -73,6 +73,10 @@ class Arc:
     def length(self) -> float:
         return abs(self.spoke) * abs(self.sweep)
 
+    @property
+    def bend(self) -> float:
+        return self.sweep * self.sweep * abs(self.spoke)
+
     def point(self, t: float) -> complex:
         return self.start + self.spoke * swing(self.sweep * t)
 
@@ -83,7 +87,8 @@ class Arc:
         return self.start + self.spoke * swings(self.sweep * t)
 
     def derivatives(self, t: Floats) -> Complexes:
-        return 1j * self.sweep * self.spoke * np.exp(1j * self.sweep * t)
+        slopes: Complexes = 1j * self.sweep * self.spoke * np.exp(1j * self.sweep * t)
+        return slopes
 
     def split(self, t: float) -> tuple[Arc, Arc]:
         first, second = self.sweep * t, self.sweep * (1.0 - t)

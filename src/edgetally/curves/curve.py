@@ -44,6 +44,10 @@ class Curve(Protocol):
     def length(self) -> float:
         """∫|z′(t)| dt."""
 
+    @property
+    def bend(self) -> float:
+        """An upper bound of |z″(t)|: a piece of parameter width h stays within bend·h²/8 of its chord."""
+
     def point(self, t: float) -> complex:
         """Return z(t)."""
 

@@ -25,7 +25,7 @@ ROUNDINGS = 8.0
 class Moments:
     """Raw moments up to the second order about the origin of the frame, and a bound of each one's rounding error.
 
-    m_pq = ∫xᵖy^q dA [unit^(p+q+2)]; `slack` has the same keys. m11 is positive where the bulk lies in quadrants 1 and 3.
+    m_pq = ∫xᵖy^q dA [unit^(p+q+2)]; `slack` has the same keys. m11 > 0 where the bulk lies in quadrants 1 and 3.
     """
 
     m00: float

@@ -22,6 +22,10 @@ class Line:
     def length(self) -> float:
         return abs(self.end - self.start)
 
+    @property
+    def bend(self) -> float:
+        return 0.0
+
     def point(self, t: float) -> complex:
         # measured from the nearer end, so that both ends come out as given
         chord = self.end - self.start

@@ -30,6 +30,7 @@ from edgetally.output.pens import (
     Label,
     Path,
     Picture,
+    Style,
     arrowhead,
     disc,
     polygon,
@@ -178,20 +179,23 @@ class _Figure:
 
     # ------------------------------------------------------------------ marks
     def _extreme_fibres(self) -> Iterable[Item]:
-        yield from self._fibre_marks((1.0, 1j, -1.0, -1j), hollow=False)
-        if not self.arbitrary and abs(degrees(self.theta)) % 90.0 > SAME_FIBRE and (
-            90.0 - abs(degrees(self.theta)) % 90.0 > SAME_FIBRE
-        ):
+        tips: list[complex] = []
+        yield from self._fibre_marks((1.0, 1j, -1.0, -1j), SOLID_MARK, tips)
+        off = abs(degrees(self.theta)) % 90.0
+        if not self.arbitrary and SAME_FIBRE < off < 90.0 - SAME_FIBRE:
             turn = rect(1.0, self.theta)
-            yield from self._fibre_marks((turn, 1j * turn, -turn, -1j * turn), hollow=True)
+            yield from self._fibre_marks((turn, 1j * turn, -turn, -1j * turn), HOLLOW_MARK, tips)
 
-    def _fibre_marks(self, directions: Iterable[complex], *, hollow: bool) -> Iterable[Item]:
+    def _fibre_marks(self, directions: Iterable[complex], style: Style, tips: list[complex]) -> Iterable[Item]:
+        """Arrowheads that touch the outline from outside; one that meets another stands behind it."""
+        size = 5.5
         for direction in directions:
             tip = self.paper(_extreme_point(self.section, direction)) + 1.2 * direction
-            size = 5.5
+            while any(abs(tip - other) < size for other in tips):
+                tip += (size + 1.0) * direction
+            tips.append(tip)
             base = tip + size * direction
-            points = [tip, base + 0.42j * size * direction, base - 0.42j * size * direction]
-            yield polygon(points, HOLLOW_MARK if hollow else SOLID_MARK)
+            yield polygon([tip, base + 0.42j * size * direction, base - 0.42j * size * direction], style)
 
     def _centroid(self) -> Iterable[Item]:
         yield from centroid_mark(self.centre)
@@ -246,11 +250,9 @@ def _extreme_point(section: SectionResult, direction: complex) -> complex:
     reach = packed.supports(direction)
     curves = [curve for loop in section.section.loops for curve in loop.curves]
     near = [k for k in range(len(curves)) if reach[k] >= reach.max() - 1e-9 * section.section.size]
-    best = max(near, key=lambda k: _run_along(curves[k], direction))
-    curve = curves[best]
-    if abs(_run_along(curve, direction)) > 0.0 and abs(
-        ((curve.end - curve.start) * direction.conjugate()).real
-    ) <= 1e-9 * section.section.size and not isinstance(curve, Arc):
+    curve = curves[max(near, key=lambda k: _run_along(curves[k], direction))]
+    flat = abs(((curve.end - curve.start) * direction.conjugate()).real) <= 1e-9 * section.section.size
+    if flat and isinstance(curve, Line):
         return 0.5 * (curve.start + curve.end)
     return curve.point(curve.support(direction)[1])
 

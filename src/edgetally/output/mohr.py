@@ -21,6 +21,7 @@ from edgetally.output.pens import (
     SOLID_MARK,
     THIN,
     THIN_ACCENT,
+    Anchor,
     Item,
     Label,
     Path,
@@ -38,6 +39,8 @@ if TYPE_CHECKING:
 CIRCLE = Style(width=0.8)
 ROOM = 30.0
 """Room [pt] around the circle for the labels."""
+WITH_ORIGIN = 2.0
+"""Where I₁ is more than so many diameters from 0, the circle is drawn large and the axis does not start at 0."""
 SMALL = 1e-6
 """A circle smaller than this share of its distance from the origin is a point in print."""
 
@@ -61,7 +64,7 @@ def _items(values: dict[str, float], width: float, height: float, symbols: Symbo
     paper_radius = min(0.5 * width - ROOM - 8.0, 0.5 * height - ROOM)
     origin = mean / radius * paper_radius  # distance on paper from I = 0 to the centre
     room = width - 2.0 * ROOM
-    with_origin = mean + radius <= 5.0 * (2.0 * radius)
+    with_origin = mean + radius <= WITH_ORIGIN * 2.0 * radius
     if with_origin and origin + paper_radius > room:
         paper_radius *= room / (origin + paper_radius)
         origin = mean / radius * paper_radius
@@ -91,12 +94,17 @@ def _items(values: dict[str, float], width: float, height: float, symbols: Symbo
     for z, letter in ((x, letter_x), (y, letter_y)):
         yield disc(z, 1.9, SOLID_MARK)
         yield Label(_beside(z, centre), letter, 8.5, "middle", bold=True)
-    for value, key, anchor in ((first, "principal_moment_1", "start"), (second, "principal_moment_2", "end")):
-        z = centre + (value - mean) / radius * paper_radius
+    anchors: tuple[tuple[str, complex, Anchor], ...] = (
+        ("principal_moment_1", centre + paper_radius, "start"),
+        ("principal_moment_2", centre - paper_radius, "end"),
+    )
+    for key, z, anchor in anchors:
         yield disc(z, 1.9, ACCENT_MARK)
-        shift = complex(4.0 if anchor == "start" else -4.0, -11.0)
-        yield Label(z + shift, symbol_of(key, symbols), 8.5, "start" if anchor == "start" else "end",
-                    bold=True, colour=ACCENT, symbol=True)  # fmt: skip
+        # on the other side of the axis than the point X or Y that is on this half of the circle
+        point = x if (x.real >= centre.real) == (anchor == "start") else y
+        rise = -11.0 if _above(point, centre) else 5.0
+        at = z + complex(4.0 if anchor == "start" else -4.0, rise)
+        yield Label(at, symbol_of(key, symbols), 8.5, anchor, bold=True, colour=ACCENT, symbol=True)
     yield disc(centre, 1.2, SOLID_MARK)
 
 
@@ -111,18 +119,21 @@ def _turn(centre: complex, x: complex, paper_radius: float) -> Iterable[Item]:
     sense = -1j if start > 0 else 1j
     lean = rect(1.0, (2.5 / radius) * (1 if start > 0 else -1))
     yield arrowhead(arc.end, sense * lean, ACCENT_MARK, size=min(4.5, radius * abs(start)))
-    at = centre + rect(radius + 8.0, 0.5 * start) - complex(0.0, 3.0)
-    yield Label(at, "2θ", 8.5, "middle", colour=ACCENT)
+    wide = abs(degrees(start)) > 40.0
+    at = rect(radius + 9.0, 0.5 * start) if wide else complex(radius + 2.0, -10.0 if start > 0 else 10.0)
+    yield Label(centre + at - complex(0.0, 3.0), "2θ", 8.5, "middle", colour=ACCENT)
 
 
-def _beside(z: complex, centre: complex) -> complex:
+def _above(point: complex, centre: complex) -> bool:
+    return point.imag >= centre.imag - 1e-6
+
+
+def _beside(point: complex, centre: complex) -> complex:
     """Where the letter of a point of the circle stands: outside, and clear of the horizontal axis."""
-    outward = (z - centre) / abs(z - centre)
-    at = z + 9.5 * outward
-    if abs(outward.imag) < 0.35:
-        at = complex(at.real, z.imag + (9.0 if z.imag >= centre.imag - 1e-9 else -9.0))
-        if z.imag < centre.imag - 1e-9:  # below the axis stand the principal values
-            at = complex(at.real, z.imag - 14.0)
+    outward = (point - centre) / abs(point - centre)
+    at = point + 9.5 * outward
+    if abs(outward.imag) < 0.45:
+        at = complex(at.real, point.imag + (9.0 if _above(point, centre) else -9.0))
     return at - complex(0.0, 3.0)
 
 

@@ -55,10 +55,11 @@ def property_lines(section: SectionResult, symbols: SymbolSet, keys: tuple[str, 
     name_width = max(len(row[1]) for row in rows)
     before = max(len(_whole(row[2])) for row in rows)
     after = max(len(row[2]) - len(_whole(row[2])) for row in rows)
-    lines = []
+    head = f"  {'':<{symbol_width}}  {'':<{name_width}}  {'':<{before + after}}  {'unit':<5} relative error"
+    lines = [head]
     for symbol, name, value, unit, error in rows:
         number = _whole(value).rjust(before) + value[len(_whole(value)) :].ljust(after)
-        bound = f"± {error:.0e}" if error else ""
+        bound = f"{error:.0e}" if error else ""
         lines.append(f"  {symbol:<{symbol_width}}  {name:<{name_width}}  {number}  {unit:<5} {bound}".rstrip())
     return lines
 
