@@ -7,7 +7,9 @@ from math import tau
 
 import numpy as np
 
+from edgetally.curves import bernstein
 from edgetally.curves.arc import Arc
+from edgetally.curves.bezier import Bezier
 from edgetally.curves.curve import Curve
 from edgetally.curves.elliptic import EllipticArc
 from edgetally.curves.line import Line
@@ -34,6 +36,8 @@ def nearest(curve: Curve, p: complex) -> tuple[float, float]:
         return best
     if isinstance(curve, EllipticArc):
         return _nearest_elliptic(curve, p, best)
+    if isinstance(curve, Bezier):
+        return _nearest_bezier(curve, p, best)
     raise TypeError(f"no distance to a curve of kind {type(curve).__name__}")
 
 
@@ -81,3 +85,24 @@ def _polished(curve: EllipticArc, p: complex, t: float) -> tuple[float, float]:
             break
         distance, t = nearer, trial
     return distance, t
+
+
+def _nearest_bezier(curve: Bezier, p: complex, best: tuple[float, float]) -> tuple[float, float]:
+    # The nearest point is an end or a root of Re(conj(N)·(N′W − N·W′)), with z − p = N/W: of degree 3p − 1, or 2p − 1.
+    if curve.weights is None:
+        rays = [q - p for q in curve.control]
+        rate = bernstein.product([q.conjugate() for q in rays], bernstein.slope(rays))
+    else:
+        weights = [complex(w) for w in curve.weights]
+        rays = [w * (q - p) for q, w in zip(curve.control, weights, strict=True)]
+        back = [q.conjugate() for q in rays]
+        growing = bernstein.product(bernstein.product(back, bernstein.slope(rays)), weights)
+        fading = bernstein.product(bernstein.product(back, rays), bernstein.slope(weights))
+        rate = [g - f for g, f in zip(growing, fading, strict=True)]
+    for t in bernstein.roots([r.real for r in rate]):
+        z, slope = curve.point(t), curve.derivative(t)
+        best = min(best, (abs(z - p), t))
+        if slope != 0:  # on the curve itself the root is blunt by the rounding of the far end: one more projection
+            t = min(max(t - ((z - p) * slope.conjugate()).real / abs(slope) ** 2, 0.0), 1.0)
+            best = min(best, (abs(curve.point(t) - p), t))
+    return best

@@ -83,9 +83,9 @@ def _items(values: dict[str, float], width: float, height: float, symbols: Symbo
         yield arrowhead(complex(zero.real, top), 1j, SOLID_MARK)
         name = symbol_of("product_of_inertia", symbols)
         yield Label(complex(zero.real - 5.0, top - 6.0), name, 8.5, "end", symbol=True)
-        yield Label(complex(zero.real - 4.0, centre.imag - 10.0), "0", 8.0, "end")
+        yield Label(complex(zero.real - 4.0, 2 * centre.imag - top), "0", 8.0, "end")
     else:
-        yield Label(complex(left, centre.imag + 4.0), "axis does not start at 0", 6.5, colour=MUTED)
+        yield Label(complex(left, 3.0), "the axis I does not start at 0", 6.5, colour=MUTED)
     yield disc(centre, paper_radius, CIRCLE)
     x = centre + complex(0.5 * (ix - iy), ixy) / radius * paper_radius
     y = 2 * centre - x

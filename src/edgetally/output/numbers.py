@@ -23,7 +23,8 @@ def number_text(value: float, digits: int = DIGITS) -> str:
         return str(value)
     if value == 0:
         return "0"
-    exponent = floor(log10(abs(float(f"{value:.{digits - 1}e}"))))
+    value = float(f"{value:.{digits - 1}e}")
+    exponent = floor(log10(abs(value)))
     if -4 <= exponent < 7:
         return f"{value:.{max(0, digits - 1 - exponent)}f}"
     power = 3 * (exponent // 3)

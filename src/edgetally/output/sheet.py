@@ -14,7 +14,7 @@ from edgetally import __version__
 from edgetally.output.figure import POINTS_PER_MM, section_picture
 from edgetally.output.mohr import mohr_picture
 from edgetally.output.numbers import value_text
-from edgetally.output.paper import BOLD, REGULAR, PdfPen, fitted, register_fonts, text_width, wrapped
+from edgetally.output.paper import BOLD, REGULAR, PdfPen, fitted, printable, register_fonts, text_width, wrapped
 from edgetally.output.pens import ACCENT, INK, MUTED, Colour, draw
 from edgetally.output.symbols import AXES, KEYS, SymbolSet, name_of, symbol_of
 from edgetally.output.words import CAUTION, conventions, evidence, header_fields, in_print
@@ -26,7 +26,7 @@ if TYPE_CHECKING:
 
 PAGES = {"a4": A4, "letter": LETTER}
 LEFT, RIGHT, TOP, BOTTOM = 18 * POINTS_PER_MM, 11 * POINTS_PER_MM, 11 * POINTS_PER_MM, 9 * POINTS_PER_MM
-SMALL, BODY = 6.6, 7.8
+SMALLEST, SMALL, BODY = 5.2, 6.6, 7.8
 LEADING = 9.4
 HAIR, RULE = 0.35, 0.9
 LIGHT = (0.78, 0.79, 0.80)
@@ -174,8 +174,12 @@ class _Sheet:
 
     def _field(self, name: str, value: str, x: float, y: float, width: float, size: float = BODY) -> None:
         self.pen.text(x + 3.0, y - 7.6, name, 6.0, colour=MUTED)
-        if value:
-            self.pen.text(x + 3.0, y - 9.5 - size, fitted(value, size, width - 6.0), size)
+        if not value:
+            return
+        # what does not fit is set smaller before anything of it is cut
+        small = size * min(1.0, (width - 6.0) / text_width(printable(value), size))
+        size = max(small, SMALLEST)
+        self.pen.text(x + 3.0, y - 9.5 - size, fitted(value, size, width - 6.0), size)
 
     def _foot(self, section: SectionResult) -> float:
         """Draw conventions, caution and page number; return the y above them."""
