@@ -47,9 +47,7 @@ def draw_loose(space: Any, contours: Sequence[Sequence[Piece]], layer: str = "OU
             a, b = (math.degrees(math.atan2((p - centre).imag, (p - centre).real)) for p in (start, end))
             if bulge < 0:
                 a, b = b, a
-            space.add_arc(
-                (centre.real, centre.imag), abs(start - centre), a, b, dxfattribs={"layer": layer}
-            )
+            space.add_arc((centre.real, centre.imag), abs(start - centre), a, b, dxfattribs={"layer": layer})
 
 
 def square(space: Any, size: float = 10.0, at: tuple[float, float] = (0.0, 0.0), layer: str = "OUTLINE") -> None:

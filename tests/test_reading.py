@@ -110,9 +110,9 @@ def test_every_version_gives_the_same(tmp_path: Path, version: str, binary: bool
     document = ezdxf.new(version)
     document.layers.add("OUTLINE")
     space = document.modelspace()
-    space.add_polyline2d(
-        [(0, 0, 0), (40, 0, 0.3), (40, 30, 0), (0, 30, 0)], format="xyb", dxfattribs=OUTLINE
-    ).close(True)
+    space.add_polyline2d([(0, 0, 0), (40, 0, 0.3), (40, 30, 0), (0, 30, 0)], format="xyb", dxfattribs=OUTLINE).close(
+        True
+    )
     space.add_circle((12, 15), 5, dxfattribs=OUTLINE)
     path = tmp_path / "d.dxf"
     document.saveas(path, fmt="bin" if binary else "asc")

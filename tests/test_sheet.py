@@ -55,7 +55,7 @@ def test_every_property_is_on_the_page_with_name_value_and_unit() -> None:
         "area 2826.784 mm²",
         "angle from x to 1 23.6873 °",
         "elastic modulus 1, +2 side 63777.61 mm³",
-        "mass per length 22.19025 kg/m",
+        "mass per length at 7850 kg/m³ 22.19025 kg/m",
     ):
         assert words in re.sub(r"\s+", " ", text)
 
@@ -257,7 +257,9 @@ def test_the_page_is_not_blank_when_rendered() -> None:
 
 def test_command_writes_the_sheet_and_a_summary(tmp_path: Path) -> None:
     target = tmp_path / "sheet.pdf"
-    code, out, err = run("sheet", SAMPLES / "round-edged-bar.dxf", "--layer", "OUTLINE", "-o", target, "--page", "letter")
+    code, out, err = run(
+        "sheet", SAMPLES / "round-edged-bar.dxf", "--layer", "OUTLINE", "-o", target, "--page", "letter"
+    )
     assert (code, err) == (0, "")
     assert "second moment about x" in out
     assert f"written: {target}" in out

@@ -263,9 +263,7 @@ def _layers(
     raise DrawingError(message, [Finding("layer-missing", "error", message)])
 
 
-def _unit(
-    drawing: DrawingFile, option: str | None, reading: Reading, findings: list[Finding]
-) -> tuple[str, str]:
+def _unit(drawing: DrawingFile, option: str | None, reading: Reading, findings: list[Finding]) -> tuple[str, str]:
     header, words = drawing.header_unit()
     if option is not None:
         if header is not None and header != option:

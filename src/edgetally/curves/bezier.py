@@ -9,7 +9,7 @@ from math import comb
 
 import numpy as np
 
-from edgetally.curves import bernstein
+from edgetally.curves import bernstein, quadrature
 from edgetally.curves.curve import UNKNOWN, Complexes, Floats, Source
 from edgetally.curves.quadrature import arc_length, gauss
 
@@ -31,6 +31,25 @@ def basis(degree: int, n: int) -> tuple[Floats, Floats]:
 
     lower = np.vstack([np.zeros(n), bernsteins(degree - 1), np.zeros(n)])
     return bernsteins(degree), degree * (lower[:-1] - lower[1:])
+
+
+def polynomial_nodes(control: Complexes) -> tuple[Complexes, Complexes]:
+    """Return quadrature nodes z and dz (…, 3p) of polynomial pieces by their control points (…, p + 1).
+
+    ∫f dz is exact for polynomials f of degree ≤ 5: the integrand is of degree 6p − 1.
+    """
+    degree = control.shape[-1] - 1
+    values, slopes = basis(degree, 3 * degree)
+    z, dz = control @ values, control @ (slopes * gauss(3 * degree)[1])
+    return np.asarray(z, dtype=complex), np.asarray(dz, dtype=complex)
+
+
+def polynomial_lengths(control: Complexes) -> Floats:
+    """Return the lengths of polynomial pieces by their control points (n, p + 1), nan where one rule is not enough."""
+    coarse, fine = (
+        np.abs(control @ basis(control.shape[-1] - 1, n)[1]) @ gauss(n)[1] for n in (quadrature.LOW, quadrature.HIGH)
+    )
+    return np.where(np.abs(fine - coarse) <= quadrature.AGREEMENT * fine, fine, np.nan)
 
 
 @dataclass(frozen=True, slots=True)
@@ -114,14 +133,11 @@ class Bezier:
     def nodes(self) -> tuple[Complexes, Complexes]:
         """Return quadrature nodes z and dz = weight·z′: Σ f(z)·dz = ∫f dz for polynomials f of degree ≤ 5.
 
-        Exact for a polynomial piece: the integrand is of degree 6p − 1, and 3p nodes do. Of a rational piece halves are
-        taken until two orders agree to 1e-14 of its size on every such f.
+        Exact for a polynomial piece. Of a rational piece halves are taken until two orders agree to 1e-14 of its size
+        on every such f.
         """
         if self.weights is None:
-            n = 3 * self.degree
-            values, slopes = basis(self.degree, n)
-            control = np.array(self.control)
-            return control @ values, (control @ slopes) * gauss(n)[1]
+            return polynomial_nodes(np.array(self.control, dtype=complex))
         size = max(abs(p - self.start) for p in self.control)
         z_all, dz_all = [], []
         waiting = [(0.0, 1.0, 0)]

@@ -14,7 +14,8 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from edgetally.curves.packed import Packed
+from edgetally.curves.curve import Complexes, Floats
+from edgetally.curves.packed import BLOCK, Packed
 
 EPS = float(np.finfo(float).eps)
 # Roundings that one term of a moment passes through: frame, products, weight, sum.
@@ -40,7 +41,7 @@ class Moments:
 def moments(curves: Packed, *, input_rounding: float = 0.0) -> Moments:
     """Integrate the raw moments of the area enclosed by closed directed `curves`.
 
-    Straight pieces in closed form, arcs by Gauss–Legendre; relative rounding near 1e-15 where nothing cancels.
+    Straight pieces in closed form, others by Gauss–Legendre; relative rounding near 1e-15 where nothing cancels.
     `input_rounding` [unit] is by how much each coordinate may be off before it came here. The slack is
 
         rounding of the sum: ROUNDINGS·ε·(max|x|·Σ|Δy| + max|y|·Σ|Δx|)·max|x|ᵖ·max|y|^q / (p + q + 2), and
@@ -48,23 +49,30 @@ def moments(curves: Packed, *, input_rounding: float = 0.0) -> Moments:
 
     the second because a boundary moved by δ along its normal changes ∫f dA by at most δ∮|f| ds.
     """
-    total = np.zeros(6)
+    sums, reach, travel, perimeter = np.zeros((5, 5)), np.zeros(2), np.zeros(2), 0.0
+    rows = np.ones((11, min(BLOCK, len(curves))))
     for start, end in curves.straight_blocks():
-        chord, middle = end - start, start + end
-        dx, dy, x, y = chord.real.copy(), chord.imag.copy(), middle.real.copy(), middle.imag.copy()
-        # with s = z₀ + z₁ and d = z₁ − z₀: c = ½(sₓdᵧ − sᵧdₓ), and the mean of x² along the piece is (s² + d²/3)/4
-        c = x * dy
-        c -= y * dx
-        u, v = x * c, y * c
-        p = dx * c
-        total += 0.5 * np.array([
-            c.sum(),
-            0.5 * u.sum(),
-            0.5 * v.sum(),
-            0.25 * (x.dot(u) + dx.dot(p) / 3.0),
-            0.25 * (y.dot(u) + dy.dot(p) / 3.0),
-            0.25 * (y.dot(v) + (dy * c).dot(dy) / 3.0),
-        ])  # fmt: skip
+        z0, z1 = _coordinates(start), _coordinates(end)
+        # rows: d = z₁ − z₀, s = z₀ + z₁ and ones; their products with c; one to spare
+        plain, weighted, spare = rows[:5, : len(start)], rows[5:10, : len(start)], rows[10, : len(start)]
+        d, s, c = plain[:2], plain[2:4], weighted[4]
+        np.subtract(z1, z0, out=d)
+        np.add(z1, z0, out=s)
+        np.multiply(s[0], d[1], out=c)
+        np.multiply(s[1], d[0], out=spare)
+        c -= spare
+        np.multiply(plain[:4], c, out=weighted[:4])
+        sums += weighted @ plain.T
+        if input_rounding:
+            perimeter += float(np.sqrt(np.einsum("ij,ij->j", d, d, out=spare), out=spare).sum())
+        size = np.abs(plain[:4], out=weighted[:4])
+        travel += size[:2] @ plain[4]
+        size[2:] += size[:2]  # |s| + |d| is twice the larger one of the two ends
+        np.maximum(reach, size[2:].max(axis=1), out=reach)
+    # c was twice the one above, and the mean of x² along a straight piece is (s² + d²/3)/4
+    mean = sums[2:4, 2:4] + sums[:2, :2] / 3.0
+    total = np.array([0.5 * sums[4, 4], *(0.25 * sums[2:4, 4]), *(0.125 * mean[[0, 0, 1], [0, 1, 1]])])
+    reach *= 0.5
     for z, dz in curves.curved_nodes():
         x, y = z.real, z.imag
         c = x * dz.imag - y * dz.real
@@ -72,18 +80,25 @@ def moments(curves: Packed, *, input_rounding: float = 0.0) -> Moments:
         total += [c.sum(), u.sum(), v.sum(), (x * u).sum(), (y * u).sum(), (y * v).sum()]
     m00, m10, m01, m20, m11, m02 = (float(m) for m in total / [2, 3, 3, 4, 4, 4])
 
-    low_x, low_y, high_x, high_y = curves.box
-    x_max, y_max = max(-low_x, high_x), max(-low_y, high_y)
-    chord = curves.end - curves.start
-    travel_x = float(np.where(curves.is_arc, curves.lengths, np.abs(chord.real)).sum())
-    travel_y = float(np.where(curves.is_arc, curves.lengths, np.abs(chord.imag)).sum())
+    if len(curves.curved):
+        low_x, low_y, high_x, high_y = curves.curved.box
+        reach = np.maximum(reach, [max(-low_x, high_x), max(-low_y, high_y)])
+        bent = float(curves.curved.lengths.sum())
+        travel += bent
+        perimeter += bent
+    (x_max, y_max), (travel_x, travel_y) = reach.tolist(), travel.tolist()
     summed = ROUNDINGS * EPS * (x_max * travel_y + y_max * travel_x)
-    shifted = input_rounding * float(curves.lengths.sum())
+    shifted = input_rounding * perimeter
     slack = {
         f"m{p}{q}": (summed / (p + q + 2) + shifted) * x_max**p * y_max**q
         for p, q in ((0, 0), (1, 0), (0, 1), (2, 0), (1, 1), (0, 2))
     }
     return Moments(m00, m10, m01, m20, m11, m02, slack)
+
+
+def _coordinates(z: Complexes) -> Floats:
+    """Return the coordinates (2, n) of complex numbers (n,), without a copy where they lie in one piece."""
+    return np.ascontiguousarray(z, dtype=complex).view(float).reshape(-1, 2).T
 
 
 def enclosed_area(curves: Packed) -> float:

@@ -11,7 +11,9 @@ from itertools import pairwise
 from typing import NamedTuple
 
 from edgetally.curves.arc import Arc
+from edgetally.curves.bezier import Bezier
 from edgetally.curves.crossing_forms import arc_arc, cross, dot, line_arc, line_line
+from edgetally.curves.crossing_search import meetings
 from edgetally.curves.curve import Curve
 from edgetally.curves.elliptic import EllipticArc
 from edgetally.curves.line import Line
@@ -24,6 +26,8 @@ ROUNDING = 16 * 2.0**-52
 # A crossing at an angle whose sine is below this is refined by closest approach instead of Newton's method.
 SLIM = 1e-7
 NEWTON = 4
+# The rest of a curve beside a stretch that it shares with another, in its parameter, is not searched if below this.
+SHORTEST = 1e-12
 # Points at which a stretch is checked to stay within the tolerance, as shares of it, the middle first.
 CHECKED = (0.5, 0.25, 0.75, 0.0625, 0.9375)
 
@@ -47,17 +51,15 @@ def intersect(a: Curve, b: Curve, tolerance: float) -> list[tuple[float, float, 
     """
     tolerance = max(tolerance, ROUNDING * _size(a, b))
     found = _end_contacts(a, b, tolerance)
-    for t, u in _starts(a, b, tolerance):
-        t, u = _refined(a, b, t, u)
+    runs = overlap(a, b, tolerance) if len(found) > 1 else []
+    for t, u in _starts(a, b, tolerance, runs):
         if 0.0 <= t <= 1.0 and 0.0 <= u <= 1.0:
             z, w = a.point(t), b.point(u)
             if abs(z - w) <= tolerance:
                 found.append(Contact(t, u, 0.5 * (z + w), abs(z - w)))
     if not found:
         return []
-    for (first, last), _ in overlap(a, b, tolerance):
-        slack = tolerance / max(abs(a.derivative(first)), abs(a.derivative(last)), tolerance)
-        found = [c for c in found if not first - slack <= c.t <= last + slack]
+    found = [c for c in found if not any(_on_run(a, c, run, tolerance) for run, _ in runs)]
     return [(c.t, c.u, c.z) for c in _merged(a, b, found, tolerance)]
 
 
@@ -103,20 +105,42 @@ def _breadth(curve: Curve) -> float:
         return min(curve.radius, curve.length)
     if isinstance(curve, EllipticArc):
         return curve.semi_axes[0] * min(1.0, abs(curve.sweep))
+    if isinstance(curve, Bezier):
+        return max(abs(p - curve.start) for p in curve.control)
     raise TypeError(f"a curve of kind {type(curve).__name__} cannot be intersected")
 
 
-def _starts(a: Curve, b: Curve, tolerance: float) -> list[Range]:
-    """Return starting values (t, u) of all contacts but those at ends."""
+def _starts(a: Curve, b: Curve, tolerance: float, runs: Sequence[tuple[Range, Range]]) -> list[Range]:
+    """Return parameters (t, u) of all contacts but those at ends; they may lie outside 0 … 1."""
     if isinstance(a, Line) and isinstance(b, Line):
-        return line_line(a, b)
-    if isinstance(a, Line) and isinstance(b, Arc):
-        return line_arc(a, b, tolerance)
-    if isinstance(a, Arc) and isinstance(b, Line):
-        return [(t, u) for u, t in line_arc(b, a, tolerance)]
-    if isinstance(a, Arc) and isinstance(b, Arc):
-        return arc_arc(a, b, tolerance)
-    return []
+        found = line_line(a, b)
+    elif isinstance(a, Line) and isinstance(b, Arc):
+        found = line_arc(a, b, tolerance)
+    elif isinstance(a, Arc) and isinstance(b, Line):
+        found = [(t, u) for u, t in line_arc(b, a, tolerance)]
+    elif isinstance(a, Arc) and isinstance(b, Arc):
+        found = arc_arc(a, b, tolerance)
+    else:
+        return _searched(a, b, tolerance, runs)
+    return [_refined(a, b, t, u) for t, u in found]
+
+
+def _searched(a: Curve, b: Curve, tolerance: float, runs: Sequence[tuple[Range, Range]]) -> list[Range]:
+    """Search the parts of a that do not run along b."""
+    if not runs:
+        return meetings(a, b, tolerance)
+    found = []
+    bounds = [0.0, *(t for stretch, _ in runs for t in stretch), 1.0]
+    for first, last in zip(bounds[::2], bounds[1::2], strict=True):
+        if last - first > SHORTEST:
+            part = a if last == 1.0 else a.split(last)[0]
+            part = part if first == 0.0 else part.split(first / last)[1]
+            found += [(first + (last - first) * t, u) for t, u in meetings(part, b, tolerance)]
+    return found
+
+
+def _on_run(a: Curve, c: Contact, run: Range, tolerance: float) -> bool:
+    return run[0] < c.t < run[1] or any(abs(c.z - a.point(t)) <= tolerance for t in run)
 
 
 def _refined(a: Curve, b: Curve, t: float, u: float) -> Range:

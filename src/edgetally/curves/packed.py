@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
-from functools import cache, cached_property
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,6 +12,8 @@ from numpy.typing import NDArray
 from edgetally.curves.arc import Arc, swings
 from edgetally.curves.curve import Complexes, Curve, Floats
 from edgetally.curves.line import Line
+from edgetally.curves.others import Others, Unarrayed
+from edgetally.curves.quadrature import gauss
 
 # A panel of 60° with 12 nodes integrates the moments of an arc to rounding (tests/test_green.py shows it).
 ARC_NODES = 12
@@ -20,35 +22,36 @@ ARC_PANEL = np.pi / 3
 BLOCK = 8192
 
 
-@cache
-def gauss(n: int) -> tuple[Floats, Floats]:
-    """Return the n Gauss–Legendre nodes and weights on [0, 1], exact for polynomials of degree 2n − 1."""
-    nodes, weights = np.polynomial.legendre.leggauss(n)
-    return 0.5 * (nodes + 1.0), 0.5 * weights
+NO_OTHERS = Others.of([])
 
 
 @dataclass(frozen=True, eq=False)
 class Packed:
-    """Curves in order: `is_arc` (n,) bool; `start`, `end` (n,) complex; `spoke` (n,) complex and `sweep` (n,) [rad],
-    both 0 for straight pieces. Units are those of the curves.
+    """Curves in order: `start`, `end` (n,) complex; `spoke` (n,) complex and `sweep` (n,) [rad], both 0 but for arcs.
+
+    Elliptic arcs and Bézier pieces are kept as they are in `others`: `is_arc` and `is_straight` (n,) bool are both
+    false for those. Units are those of the curves.
     """
 
     start: Complexes
     end: Complexes
     spoke: Complexes
     sweep: Floats
+    others: Others = NO_OTHERS
 
     @classmethod
     def of(cls, curves: Iterable[Curve]) -> Packed:
-        """Pack lines and arcs. Raises TypeError for a kind that has no place in the arrays."""
-        start, end, spoke, sweep = [], [], [], []
+        """Pack curves of any kind of this folder. Raises TypeError for another kind."""
+        start, end, spoke, sweep, others = [], [], [], [], []
         for curve in curves:
             start.append(curve.start)
             end.append(curve.end)
             if isinstance(curve, Arc):
                 spoke.append(curve.spoke)
                 sweep.append(curve.sweep)
-            elif isinstance(curve, Line):
+            elif isinstance(curve, Line | Unarrayed):
+                if not isinstance(curve, Line):
+                    others.append((len(spoke), curve))
                 spoke.append(0j)
                 sweep.append(0.0)
             else:
@@ -58,6 +61,7 @@ class Packed:
             np.array(end, dtype=complex),
             np.array(spoke, dtype=complex),
             np.array(sweep, dtype=float),
+            Others.of(others),
         )
 
     @classmethod
@@ -71,12 +75,29 @@ class Packed:
 
     @cached_property
     def is_arc(self) -> NDArray[np.bool_]:
-        return self.sweep != 0.0
+        arcs: NDArray[np.bool_] = self.sweep != 0.0
+        return arcs
+
+    @cached_property
+    def is_straight(self) -> NDArray[np.bool_]:
+        straight = ~self.is_arc
+        straight[self.others.at] = False
+        return straight
+
+    @cached_property
+    def curved(self) -> Packed:
+        """The curves that are not straight, alone."""
+        bent = np.flatnonzero(~self.is_straight)
+        others = self.others.placed(np.searchsorted(bent, self.others.at))
+        return Packed(self.start[bent], self.end[bent], self.spoke[bent], self.sweep[bent], others)
 
     @cached_property
     def lengths(self) -> Floats:
         """The length of every curve."""
-        return np.where(self.is_arc, np.abs(self.spoke) * np.abs(self.sweep), np.abs(self.end - self.start))
+        lengths = np.where(self.is_arc, np.abs(self.spoke) * np.abs(self.sweep), np.abs(self.end - self.start))
+        if self.others.curves:
+            lengths[self.others.at] = self.others.lengths
+        return lengths
 
     @cached_property
     def magnitude(self) -> float:
@@ -87,7 +108,13 @@ class Packed:
     def framed(self, origin: complex, turn: complex = 1.0) -> Packed:
         """Return the curves as seen from axes at `origin` whose x axis points along the unit number `turn`."""
         back = complex(turn).conjugate()
-        return Packed((self.start - origin) * back, (self.end - origin) * back, self.spoke * back, self.sweep)
+        return Packed(
+            (self.start - origin) * back,
+            (self.end - origin) * back,
+            self.spoke * back,
+            self.sweep,
+            self.others.framed(origin, back),
+        )
 
     def supports(self, direction: complex) -> Floats:
         """Return for every curve the largest projection on the unit vector `direction`, as Curve.support does."""
@@ -100,6 +127,8 @@ class Packed:
             turn = np.mod(np.angle(direction / spoke) * np.sign(sweep), 2 * np.pi)
             crown = at_start[arcs] + 2.0 * np.abs(spoke) * np.sin(0.5 * turn) ** 2
             best[arcs] = np.where(turn < np.abs(sweep), np.maximum(best[arcs], crown), best[arcs])
+        if self.others.curves:
+            best[self.others.at] = self.others.supports(direction)
         return best
 
     @cached_property
@@ -110,12 +139,15 @@ class Packed:
     @cached_property
     def box(self) -> tuple[float, float, float, float]:
         """The smallest x, smallest y, largest x, largest y of all curves."""
+        if self.is_straight.all():  # without the boxes of every piece, which for polygons would take most of the time
+            x, y = (np.concatenate([self.start, self.end]).view(float).reshape(-1, 2).T[k] for k in (0, 1))
+            return float(x.min()), float(y.min()), float(x.max()), float(y.max())
         low, high = self.boxes[:, :2].min(axis=0), self.boxes[:, 2:].max(axis=0)
         return float(low[0]), float(low[1]), float(high[0]), float(high[1])
 
     def straight_blocks(self) -> Iterator[tuple[Complexes, Complexes]]:
         """Yield blocks (start, end) of the straight pieces, each small enough to stay in a processor's cache."""
-        straight = np.flatnonzero(~self.is_arc)
+        straight = np.flatnonzero(self.is_straight)
         every = len(straight) == len(self)
         for low in range(0, len(straight), BLOCK):
             here: slice | NDArray[np.intp] = slice(low, low + BLOCK) if every else straight[low : low + BLOCK]
@@ -125,7 +157,7 @@ class Packed:
         """Yield blocks (z, dz) of quadrature nodes on the curved pieces: ∫f(z) dz = Σ f(z)·dz.
 
         dz holds the Gauss weight times z′(t), so that its real and imaginary part are the weighted dx and dy.
-        Polynomials f of degree ≤ 4 are integrated to rounding.
+        Polynomials f of degree ≤ 5 are integrated to rounding.
         """
         arcs = np.flatnonzero(self.is_arc)
         t, w = gauss(ARC_NODES)
@@ -140,6 +172,7 @@ class Packed:
             turned = swings(step * (number[block] + t[:, None]))
             spoke = self.spoke[a]
             yield self.start[a] + spoke * turned, (1j * w[:, None] * step) * (spoke * (turned + 1.0))
+        yield from self.others.nodes()
 
     @cached_property
     def halved(self) -> Packed:
@@ -155,6 +188,7 @@ class Packed:
             np.concatenate([self.end[~wide], middle, self.end[wide]]),
             np.concatenate([self.spoke[~wide], self.spoke[wide], self.spoke[wide] * (turned + 1.0)]),
             np.concatenate([self.sweep[~wide], sweep, sweep]),
+            self.others.placed(np.cumsum(~wide)[self.others.at] - 1),
         )
 
     def turning(self, points: Complexes) -> Floats:
@@ -174,5 +208,6 @@ class Packed:
             d = p - pieces.start
             power = d.real**2 + d.imag**2 + 2.0 * (d.real * pieces.spoke.real + d.imag * pieces.spoke.imag)
             beside = (q.imag * pieces.sweep < 0) & (power < 0)
+            turn[:, pieces.others.at] = pieces.others.turnings(p[:, 0], turn[:, pieces.others.at])
             total[low : low + rows] = (turn + beside * np.copysign(2 * np.pi, pieces.sweep)).sum(axis=1)
         return total

@@ -107,7 +107,7 @@ def fit_spline(
         raise ValueError(f"a spline through fit points needs at least two that differ, got {len(kept)}")
     z = np.array(kept, dtype=complex)
     step = np.abs(np.diff(z))
-    secant = np.diff(z) / step
+    secant = np.asarray(np.diff(z) / step, dtype=complex)
     if closed and len(kept) > 3:
         slopes = _periodic_slopes(step, secant)
     else:
@@ -121,9 +121,7 @@ def fit_spline(
     return tuple(_simplest(piece, magnitude) for piece in pieces)
 
 
-def _open_slopes(
-    step: Floats, secant: Complexes, tangents: tuple[complex | None, complex | None]
-) -> Complexes:
+def _open_slopes(step: Floats, secant: Complexes, tangents: tuple[complex | None, complex | None]) -> Complexes:
     n = len(step) + 1
     below, diagonal, above = np.zeros(n), np.ones(n), np.zeros(n)
     right = np.zeros(n, dtype=complex)

@@ -9,8 +9,9 @@ from cmath import isfinite
 from collections.abc import Callable, Iterable
 from math import radians, tau
 
-from ezdxf.entities import LWPolyline, Polyline
 from ezdxf.entities.dxfgfx import DXFGraphic
+from ezdxf.entities.lwpolyline import LWPolyline
+from ezdxf.entities.polyline import Polyline
 
 from edgetally.curves import Arc, Curve, Line, Source
 from edgetally.drawing.limits import MAX_COORDINATE
@@ -24,8 +25,25 @@ LEVEL = 1e-6
 
 # Kinds that carry words, sizes or marks. Leaving them out changes no outline, so it is worth a note only.
 ANNOTATION = frozenset(
-    "TEXT MTEXT ATTDEF ATTRIB DIMENSION ARC_DIMENSION LARGE_RADIAL_DIMENSION LEADER MULTILEADER MLEADER TOLERANCE POINT "
-    "VIEWPORT IMAGE WIPEOUT ACAD_TABLE RTEXT".split()
+    [
+        "TEXT",
+        "MTEXT",
+        "ATTDEF",
+        "ATTRIB",
+        "DIMENSION",
+        "ARC_DIMENSION",
+        "LARGE_RADIAL_DIMENSION",
+        "LEADER",
+        "MULTILEADER",
+        "MLEADER",
+        "TOLERANCE",
+        "POINT",
+        "VIEWPORT",
+        "IMAGE",
+        "WIPEOUT",
+        "ACAD_TABLE",
+        "RTEXT",
+    ]
 )
 
 
@@ -93,9 +111,7 @@ def _polyline(entity: DXFGraphic, source: Source) -> Iterable[Curve]:
         raise UnreadError(f"it is a {entity.get_mode()[2:]}, not a plane polyline")
     if entity.dxf.flags & 6:
         raise UnreadError("its vertices were smoothed to a curve, which is not read")
-    vertices = [
-        (complex(v.dxf.location.x, v.dxf.location.y), float(v.dxf.bulge)) for v in entity.vertices
-    ]
+    vertices = [(complex(v.dxf.location.x, v.dxf.location.y), float(v.dxf.bulge)) for v in entity.vertices]
     return _bulged(vertices, entity.is_closed, entity, source)
 
 
@@ -108,9 +124,7 @@ READERS: dict[str, Callable[[DXFGraphic, Source], Iterable[Curve]]] = {
 }
 
 
-def _bulged(
-    vertices: list[tuple[complex, float]], closed: bool, entity: DXFGraphic, source: Source
-) -> Iterable[Curve]:
+def _bulged(vertices: list[tuple[complex, float]], closed: bool, entity: DXFGraphic, source: Source) -> Iterable[Curve]:
     """Turn vertices with bulges into pieces. The last bulge counts only when the polyline is closed (DXF reference).
 
     A vertex drawn twice makes a piece of no length, which encloses nothing and is passed over.

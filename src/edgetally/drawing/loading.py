@@ -7,8 +7,9 @@ import struct
 from dataclasses import dataclass
 from pathlib import Path
 
-import ezdxf
 from ezdxf.document import Drawing as Document
+from ezdxf.filemanagement import readfile
+from ezdxf.lldxf.const import DXFError
 
 from edgetally.drawing.limits import MAX_BYTES
 from edgetally.errors import DrawingError
@@ -36,7 +37,7 @@ _OTHER_KINDS = {
 # What the library raises on a file whose tags do not make sense. The list is long because its readers do not wrap
 # what goes wrong below them; each was seen on a damaged file.
 _UNREADABLE = (
-    ezdxf.DXFError,
+    DXFError,
     OSError,
     ValueError,
     TypeError,
@@ -80,7 +81,7 @@ def load(path: str | Path) -> Loaded:
     _refuse_other_kinds(path, data)
     _refuse_truncated(path, data)
     try:
-        document = ezdxf.readfile(path)
+        document = readfile(path)
     except _UNREADABLE as error:
         message = f"{path} is damaged or no DXF file: {error}; open it in a CAD program and save it again as DXF"
         raise DrawingError(message, [Finding("entity-unreadable", "error", message)]) from None

@@ -61,7 +61,7 @@ class DrawingFile:
             self._by_layer.setdefault(name.casefold(), []).append(entity)
 
     def header_unit(self) -> tuple[str | None, str]:
-        """Return the unit that `$INSUNITS` names, None where it names none that a section is drawn in, and the words."""
+        """Return the unit that `$INSUNITS` names, None where no section is drawn in it, and the header's words."""
         code = int(self._document.header.get("$INSUNITS", 0) or 0)
         if code in INSUNITS:
             return INSUNITS[code], f"$INSUNITS = {code}"

@@ -11,7 +11,7 @@ import numpy as np
 import shapely
 from numpy.typing import NDArray
 
-from edgetally.curves import Curve, Line, Packed
+from edgetally.curves import Curve, Packed
 from edgetally.curves.intersections import intersect, nearest, overlap
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding

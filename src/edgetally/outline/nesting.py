@@ -38,9 +38,7 @@ def nest(loops: Sequence[Loop]) -> tuple[list[Region], list[int]]:
         if len(outers) % 2:
             parent = max(outers, key=lambda o: len(around[o]))
             voids.setdefault(parent, []).append(loops[k].directed(counter_clockwise=False))
-    tops = sorted(
-        (k for k, outers in enumerate(around) if len(outers) % 2 == 0), key=lambda k: loops[k].packed.box[:2]
-    )
+    tops = sorted((k for k, outers in enumerate(around) if len(outers) % 2 == 0), key=lambda k: loops[k].packed.box[:2])
     regions = [
         Region(
             loops[k].directed(counter_clockwise=True),

@@ -6,10 +6,10 @@ nearest other one, so that nothing overlaps whatever the section's proportions.
 
 from __future__ import annotations
 
-from cmath import phase, rect
+from cmath import rect
 from collections.abc import Iterable
 from dataclasses import dataclass
-from math import cos, degrees, floor, inf, log10, pi, sin
+from math import degrees, floor, inf, log10, pi
 from typing import TYPE_CHECKING
 
 from edgetally.curves import Arc, Curve, Line
@@ -144,9 +144,7 @@ class _Figure:
             yield from self._axis(angle, letter, [a for a, _ in drawing], principal=True)
         yield from self._angle_arc()
 
-    def _axis(
-        self, angle: float, letter: str, others: list[float], *, principal: bool
-    ) -> Iterable[Item]:
+    def _axis(self, angle: float, letter: str, others: list[float], *, principal: bool) -> Iterable[Item]:
         direction = rect(1.0, angle)
         tip, tail = self._border(direction), self._border(-direction)
         yield stroke(tail, tip, PRINCIPAL_AXIS if principal else DRAWING_AXIS)

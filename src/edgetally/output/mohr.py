@@ -51,13 +51,16 @@ def mohr_picture(section: SectionResult, width: float, height: float, symbols: S
     return Picture(width, height, tuple(_items(values, width, height, symbols)))
 
 
-_USED = ("second_moment_x", "second_moment_y", "product_of_inertia", "principal_moment_1", "principal_moment_2")
+_USED = ("second_moment_x", "second_moment_y", "product_of_inertia")
 
 
 def _items(values: dict[str, float], width: float, height: float, symbols: SymbolSet) -> Iterable[Item]:
-    ix, iy, ixy, first, second = (values[key] for key in _USED)
+    ix, iy, ixy = (values[key] for key in _USED)
     mean, radius = 0.5 * (ix + iy), hypot(0.5 * (ix - iy), ixy)
-    letter_x, letter_y = symbol_of("second_moment_x", symbols)[2:].upper(), symbol_of("second_moment_y", symbols)[2:].upper()
+    letter_x, letter_y = (
+        symbol_of("second_moment_x", symbols)[2:].upper(),
+        symbol_of("second_moment_y", symbols)[2:].upper(),
+    )
     if radius <= SMALL * mean:
         yield from _point_only(width, height, letter_x, letter_y)
         return

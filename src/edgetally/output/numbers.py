@@ -18,7 +18,7 @@ def digits_of(error: float | None) -> int:
 
 
 def number_text(value: float, digits: int = DIGITS) -> str:
-    """Write a value with `digits` significant digits: plain up to 10⁷, then with an exponent that is a multiple of 3."""
+    """Write a value with `digits` significant digits: plain below 10⁷, then with an exponent divisible by 3."""
     if not isfinite(value):
         return str(value)
     if value == 0:

@@ -114,9 +114,7 @@ class PdfPen:
         else:
             self.text(x, z.imag, label.text, label.size, font, label.colour)
 
-    def text(
-        self, x: float, y: float, text: str, size: float, font: str = REGULAR, colour: Colour = INK
-    ) -> float:
+    def text(self, x: float, y: float, text: str, size: float, font: str = REGULAR, colour: Colour = INK) -> float:
         """Draw a text and return where it ends."""
         text = printable(text, font)
         self._canvas.setFillColorRGB(*colour)
@@ -129,9 +127,7 @@ class PdfPen:
         for k, part in enumerate(_SYMBOL.split(text)):
             x = self.symbol(x, y, part, size, font) if k % 2 else self.text(x, y, part, size, font)
 
-    def symbol(
-        self, x: float, y: float, symbol: str, size: float, font: str = REGULAR, colour: Colour = INK
-    ) -> float:
+    def symbol(self, x: float, y: float, symbol: str, size: float, font: str = REGULAR, colour: Colour = INK) -> float:
         """Draw a symbol whose subscript follows `_`, and return where it ends."""
         main, _, sub = symbol.partition("_")
         x = self.text(x, y, main, size, font, colour)

@@ -112,9 +112,10 @@ def cubics(curve: Curve) -> list[tuple[complex, complex, complex]]:
         return [(curve.start + third, curve.end - third, curve.end)]
     count = max(1, ceil(abs(curve.sweep) / CUBIC_TURN)) if isinstance(curve, Arc) else CUBICS
     t = np.linspace(0.0, 1.0, count + 1)
-    z, third = curve.points(t), curve.derivatives(t) / (3.0 * count)
+    points, thirds = curve.points(t), curve.derivatives(t) / (3.0 * count)
     return [
-        (complex(z[k] + third[k]), complex(z[k + 1] - third[k + 1]), complex(z[k + 1])) for k in range(count)
+        (complex(points[k] + thirds[k]), complex(points[k + 1] - thirds[k + 1]), complex(points[k + 1]))
+        for k in range(count)
     ]
 
 

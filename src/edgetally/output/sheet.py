@@ -16,8 +16,8 @@ from edgetally.output.mohr import mohr_picture
 from edgetally.output.numbers import value_text
 from edgetally.output.paper import BOLD, REGULAR, PdfPen, fitted, printable, register_fonts, text_width, wrapped
 from edgetally.output.pens import ACCENT, INK, MUTED, Colour, draw
-from edgetally.output.symbols import AXES, KEYS, SymbolSet, name_of, symbol_of
-from edgetally.output.words import CAUTION, conventions, evidence, header_fields, in_print
+from edgetally.output.symbols import AXES, KEYS, SymbolSet, symbol_of
+from edgetally.output.words import CAUTION, conventions, described, evidence, header_fields, in_print
 from edgetally.section.record import Property
 
 if TYPE_CHECKING:
@@ -45,9 +45,7 @@ class Head:
     date: str = ""
 
 
-def sheet_pdf(
-    analysis: Analysis, *, head: Head | None = None, page: str = "a4", symbols: SymbolSet = "plain"
-) -> bytes:
+def sheet_pdf(analysis: Analysis, *, head: Head | None = None, page: str = "a4", symbols: SymbolSet = "plain") -> bytes:
     """Return the PDF of an analysis: for each section a page, with further pages for what does not fit on it.
 
     The same analysis and head give the same bytes.
@@ -152,7 +150,11 @@ class _Sheet:
         fields = header_fields(self.analysis)
         sha = fields.pop("SHA-256")
         shares = (0.25, 0.17, 0.21, 0.17, 0.11, 0.09)
-        self._cells([(k.capitalize() if k[0].islower() else k, v, s) for (k, v), s in zip(fields.items(), shares, strict=True)], y, 23.0)
+        self._cells(
+            [(k.capitalize() if k[0].islower() else k, v, s) for (k, v), s in zip(fields.items(), shares, strict=True)],
+            y,
+            23.0,
+        )
         y -= 23.0
         self._rule(self.left, self.right, y, HAIR)
         x = pen.text(self.left + 3.0, y - 8.2, "SHA-256 of the drawing ", SMALL, colour=MUTED)
@@ -223,9 +225,10 @@ class _Sheet:
 
     def _mohr_caption(self, section: SectionResult) -> list[tuple[str, str]]:
         props, letters = section.properties, AXES[self.symbols]
-        caption = []
-        for key in ("principal_moment_1", "principal_moment_2"):
-            caption.append((symbol_of(key, self.symbols), f" = {self._value(section, props[key])} {props[key].unit.pretty}"))
+        caption = [
+            (symbol_of(key, self.symbols), f" = {self._value(section, props[key])} {props[key].unit.pretty}")
+            for key in ("principal_moment_1", "principal_moment_2")
+        ]
         if section.result.axes.arbitrary:
             return [*caption, ("", "every axis through C is principal")]
         theta = props["principal_angle"].value or 0.0
@@ -244,12 +247,14 @@ class _Sheet:
         half = (len(rows) + 1) // 2
         gutter = 16.0
         width = 0.5 * (self.right - self.left - gutter)
-        y0 = self._heading(f"Properties (relative error of each below {self._largest_error(rows)})", self.left, self.right, top)
+        y0 = self._heading(
+            f"Properties (relative error of each below {self._largest_error(rows)})", self.left, self.right, top
+        )
         for column in range(2):
             x, y = self.left + column * (width + gutter), y0
             for prop in rows[column * half : (column + 1) * half]:
                 self.pen.symbol(x, y, symbol_of(prop.key, self.symbols), BODY)
-                self.pen.text(x + 42.0, y, name_of(prop.key, self.symbols), BODY)
+                self.pen.text(x + 42.0, y, described(prop.key, self.symbols, self.analysis.density), BODY)
                 value = self._value(section, prop)
                 self.pen.text(x + width - 25.0 - text_width(value, BODY, BOLD), y, value, BODY, BOLD)
                 self.pen.text(x + width - 22.0, y, prop.unit.pretty, BODY)
@@ -331,5 +336,3 @@ class _Sheet:
 def _power_above(value: float) -> str:
     """Write the power of ten that is not below `value`, or a rounding's worth where there is no error at all."""
     return in_print(f"1e{ceil(log10(value)) if value > 0 else -15}").removeprefix("1 × ")
-
-

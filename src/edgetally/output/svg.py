@@ -84,6 +84,8 @@ def picture_svg(picture: Picture, title: str) -> str:
     ])  # fmt: skip
 
 
-def figure_svg(section: SectionResult, symbols: SymbolSet = "plain", width: float = 420.0, height: float = 380.0) -> str:
+def figure_svg(
+    section: SectionResult, symbols: SymbolSet = "plain", width: float = 420.0, height: float = 380.0
+) -> str:
     """Write the figure of a section as SVG."""
     return picture_svg(section_picture(section, width, height, symbols), f"section {section.name}")

@@ -8,10 +8,10 @@ from collections import defaultdict
 from typing import TYPE_CHECKING
 
 from edgetally.findings import RANK, Finding
-from edgetally.output.numbers import value_text
-from edgetally.output.symbols import KEYS, SymbolSet, name_of, symbol_of
-from edgetally.output.words import CAUTION, evidence, header_fields
 from edgetally.outline.words import length_text, place
+from edgetally.output.numbers import value_text
+from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
+from edgetally.output.words import CAUTION, described, evidence, header_fields
 
 if TYPE_CHECKING:
     from edgetally.analysis import Analysis, SectionResult
@@ -34,7 +34,7 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
         lines.append("")
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:
             lines.append(f"section {section.name}")
-        lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS)
+        lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS, analysis.density)
     findings = finding_lines(analysis.all_findings, analysis)
     if findings:
         lines += ["", "findings", *findings]
@@ -43,14 +43,18 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
     return "\n".join(lines)
 
 
-def property_lines(section: SectionResult, symbols: SymbolSet, keys: tuple[str, ...]) -> list[str]:
+def property_lines(
+    section: SectionResult, symbols: SymbolSet, keys: tuple[str, ...], density: float | None = None
+) -> list[str]:
     """Return aligned lines: symbol, name, value with its decimal points under each other, unit, relative error."""
     rows = []
     for key in keys:
         prop = section.properties.get(key)
         if prop is not None:
             value = value_text(prop, section.natural_scale(key))
-            rows.append((symbol_of(key, symbols), name_of(key, symbols), value, prop.unit.pretty, prop.error))
+            rows.append(
+                (symbol_of(key, symbols), described(key, symbols, density), value, prop.unit.pretty, prop.error)
+            )
     symbol_width = max(len(row[0]) for row in rows)
     name_width = max(len(row[1]) for row in rows)
     before = max(len(_whole(row[2])) for row in rows)
@@ -86,7 +90,9 @@ def finding_lines(findings: tuple[Finding, ...], analysis: Analysis) -> list[str
             lines += [f"  {severity}: {f.code}: {f.message}" for f in group]
         else:
             widest = f"{length_text(effect.widest, analysis.drawing.unit)} at {place(effect.at)}"
-            lines.append(f"  {severity}: gap-joined: {len(group)} gaps joined, the widest of all {widest}; --json lists each")
+            lines.append(
+                f"  {severity}: gap-joined: {len(group)} gaps joined, the widest of all {widest}; --json lists each"
+            )
     return lines
 
 

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from edgetally.output.numbers import mantissa_and_power, number_text
 from edgetally.outline.words import length_text, place
+from edgetally.output.numbers import mantissa_and_power, number_text
+from edgetally.output.symbols import SymbolSet, name_of
 from edgetally.units import Unit
 
 if TYPE_CHECKING:
@@ -26,8 +27,8 @@ def conventions(x: str, y: str, first: str, second: str) -> list[str]:
     return [
         f"{x} to the right, {y} up, as drawn. I_{x} = ∫{y}² dA and I_{y} = ∫{x}² dA about the centroid C; "
         f"I_{x}{y} = +∫{x}·{y} dA (some texts use the other sign).",
-        f"I_{first} ≥ I_{second}. θ is the angle from +{x} to axis {first}, counter-clockwise positive; axis {second} is "
-        f"axis {first} turned by +90°.",
+        f"I_{first} ≥ I_{second}. θ is the angle from +{x} to axis {first}, counter-clockwise positive; axis {second} "
+        f"is axis {first} turned by +90°.",
         f"Elastic moduli are I over the distance to the extreme fibre of the true outline on the side named; for axis "
         f"{first} the + side is towards +{second}, for axis {second} towards +{first}.",
     ]
@@ -37,6 +38,12 @@ def in_print(text: str) -> str:
     """Turn the exponent that number_text wrote into a power of ten: 19.43e6 → 19.43 × 10⁶."""
     mantissa, power = mantissa_and_power(text.replace("-", "−"))
     return f"{mantissa} × 10{str(power).translate(_SUPERSCRIPT)}" if power else mantissa
+
+
+def described(key: str, symbols: SymbolSet, density: float | None) -> str:
+    """Return the name of a property; of the mass, with the density it was taken at."""
+    name = name_of(key, symbols)
+    return f"{name} at {density:g} kg/m³" if key == "mass_per_length" else name
 
 
 def evidence(analysis: Analysis) -> list[tuple[str, str]]:
@@ -62,7 +69,9 @@ def evidence(analysis: Analysis) -> list[tuple[str, str]]:
     if effect is None:
         lines.append(("joins", f"none: all ends meet exactly (joined {limit})"))
     else:
-        lines.append(("joins", f"{effect.count} ({limit}), widest {length_text(effect.widest, unit)} at {place(effect.at)}"))
+        lines.append(
+            ("joins", f"{effect.count} ({limit}), widest {length_text(effect.widest, unit)} at {place(effect.at)}")
+        )
         out = analysis.out_unit
         lines.append((
             "largest effect of the joins",
@@ -99,5 +108,3 @@ def header_fields(analysis: Analysis) -> dict[str, str]:
         "DXF version": drawing.dxf_version,
         "SHA-256": drawing.sha256,
     }
-
-

@@ -97,7 +97,9 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
         give("mass_per_length", area * Bounded(square_mm * density * 1e-6))
     findings: tuple[Finding, ...] = ()
     if axes.arbitrary:
-        text = "the principal moments are equal: every axis through the centroid is principal, and the angle is given as 0"
+        text = (
+            "the principal moments are equal: every axis through the centroid is principal, and the angle is given as 0"
+        )
         findings = (Finding("axes-arbitrary", "note", text),)
     return AreaResult(out, complex(x.value, y.value), axes, findings)
 

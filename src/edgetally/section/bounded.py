@@ -10,7 +10,7 @@ from edgetally.curves.green import EPS
 
 @dataclass(frozen=True, slots=True)
 class Bounded:
-    """A value with |true − value| ≤ slack, to first order, in the value's unit. Each operation adds its own rounding."""
+    """A value with |true − value| ≤ slack, to first order, in its unit. Each operation adds its own rounding."""
 
     value: float
     slack: float = 0.0

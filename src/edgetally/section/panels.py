@@ -1,0 +1,226 @@
+"""Panels: the pieces of the boundary on which everything is a polynomial through Gauss–Legendre nodes.
+
+The warping function of a region behaves like r^{π/a} at a corner of interior angle a. Panels that shrink towards the
+corner by a fixed ratio resolve that at a rate exponential in their number; what the innermost pair misses falls as its
+size to the power 2π/a (Babuška and Guo on graded meshes of this kind).
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+
+from edgetally.curves.curve import Complexes, Floats
+from edgetally.section import legendre
+from edgetally.section.boundary import Boundary, Ints, Mask
+
+# Towards a corner each panel is this many times shorter than the one before.
+RATIO = 4.0
+# A panel may be this many times longer than twice its distance to another and that one's length together.
+SLACK = 3.0
+# On 60° of a circle 12 nodes lose nothing, and the preimage of a point nearby is unique.
+TURN = np.pi / 3
+# Nodes of shorter panels would coincide in double precision (sizes near 1).
+SHORTEST = 1e-11
+# A joint that turns by less is smooth, one whose curvatures differ by less has none.
+SMOOTH = 1e-10
+# A general curve is halved until its polynomial of degree 15 has ended.
+SAMPLES = 16
+ENDED = 1e-13
+ROUNDS = 60
+
+
+@dataclass(frozen=True, eq=False)
+class Panels:
+    """P panels in order along the loops: part low < t < high of a curve, with `order` nodes on it. All arrays (P,)."""
+
+    boundary: Boundary
+    curve: Ints
+    low: Floats
+    high: Floats
+    order: Ints
+
+    def __len__(self) -> int:
+        return len(self.curve)
+
+    @cached_property
+    def samples(self) -> Complexes:
+        """(P, 3): first, middle and last point of each panel."""
+        t = np.column_stack([self.low, 0.5 * (self.low + self.high), self.high])
+        return self.boundary.points(self.curve, t)[0]
+
+    @cached_property
+    def length(self) -> Floats:
+        """The length of each panel, to first order for general curves."""
+        s = self.samples
+        chords = np.abs(s[:, 1] - s[:, 0]) + np.abs(s[:, 2] - s[:, 1])
+        arc = self.boundary.is_arc[self.curve]
+        true = self.boundary.length[self.curve] * (self.high - self.low)
+        return np.where(arc, true, chords)
+
+    def halved(self, mask: Mask) -> Panels:
+        """Return the panels with the marked ones cut in two equal parts of the same order."""
+        times = np.where(mask, 2, 1)
+        middle = 0.5 * (self.low + self.high)
+        curve, low, high = (np.repeat(a, times) for a in (self.curve, self.low, self.high))
+        first = (np.cumsum(times) - times)[mask]
+        high[first], low[first + 1] = middle[mask], middle[mask]
+        return Panels(self.boundary, curve, low, high, np.repeat(self.order, times))
+
+    def with_order(self, order: Ints) -> Panels:
+        return Panels(self.boundary, self.curve, self.low, self.high, order)
+
+
+def whole(boundary: Boundary, order: int = 16) -> Panels:
+    """Return panels fine enough for the curves themselves: lines whole, arcs to 60°, others until they are polynomials."""
+    count = len(boundary)
+    curve = np.arange(count)
+    pieces = np.maximum(1, np.ceil(np.abs(boundary.sweep) / TURN * (1 - 1e-12)).astype(int))
+    number = np.arange(pieces.sum()) - np.repeat(np.cumsum(pieces) - pieces, pieces)
+    curve, share = np.repeat(curve, pieces), 1.0 / np.repeat(pieces, pieces)
+    panels = Panels(boundary, curve, number * share, (number + 1) * share, np.full(len(curve), order))
+    return _resolved(panels)
+
+
+def _resolved(panels: Panels) -> Panels:
+    """Halve panels on general curves until position and speed are polynomials there and turn by at most 60°."""
+    boundary = panels.boundary
+    for _ in range(ROUNDS):
+        rest = np.flatnonzero(~boundary.is_line[panels.curve] & ~boundary.is_arc[panels.curve])
+        if not rest.size:
+            break
+        t = _inner(panels, rest, SAMPLES)
+        z, slope = boundary.points(panels.curve[rest], t)
+        half = 0.5 * (panels.high - panels.low)[rest]
+        parts = np.abs(slope @ legendre.to_coefficients(SAMPLES).T) * half[:, None]
+        # a polynomial of low degree ends at once; its rounding is that of z
+        noise = ENDED * np.abs(z).max() + 1e-11 * parts.max(axis=1)
+        turning = np.abs(np.angle(slope[:, 1:] * slope[:, :-1].conj())).sum(axis=1)
+        bad = ((parts[:, -2:].max(axis=1) > noise) | (turning > TURN)) & (parts.max(axis=1) > SHORTEST)
+        if not bad.any():
+            break
+        mask = np.zeros(len(panels), dtype=bool)
+        mask[rest[bad]] = True
+        panels = panels.halved(mask)
+    return panels
+
+
+def _inner(panels: Panels, which: Ints, n: int) -> Floats:
+    """Return the curve parameters (len(which), n) of the Gauss nodes of the given panels."""
+    low, high = panels.low[which, None], panels.high[which, None]
+    nodes = legendre.rule(n)[0]
+    # measured from the nearer end of the curve, so that panels towards its far end keep their proportions
+    t: Floats = np.where(low < 0.5, low + (high - low) * (0.5 * (1.0 + nodes)), high - (high - low) * (0.5 * (1.0 - nodes)))
+    return t
+
+
+def innermost(boundary: Boundary, depth: float) -> Floats:
+    """Return for each joint the length of the panels next to it, inf where nothing asks for short ones.
+
+    With ω ~ |turn|·r^{π/a} an error of 10^{−depth} is met at r = (10^{−depth}/|turn|)^{a/2π}, as a share of half the shorter
+    neighbour. Where only the curvature jumps, ω ~ r²·log r, taken like a = π/3. `depth` is in decades.
+    """
+    angle = np.pi - boundary.turn
+    after = boundary.following
+    shorter = np.minimum(boundary.length, boundary.length[after])
+    strength = np.minimum(np.abs(boundary.turn), 1.0)
+    with np.errstate(divide="ignore"):
+        share = np.minimum(1.0, (10.0**-depth / strength) ** (angle / (2 * np.pi)))
+    share[np.abs(boundary.turn) < SMOOTH] = 1.0
+    curved_start, curved_end = boundary.end_curvatures
+    jump = np.abs(curved_start[after] - curved_end) * shorter > 1e-6
+    share = np.where(jump, np.minimum(share, 10.0 ** (-depth / 6)), share)
+    result: Floats = np.where(share < 1.0, np.maximum(0.5 * shorter * share, SHORTEST), np.inf)
+    return result
+
+
+def graded(boundary: Boundary, depth: float, order: int, lowest: int, step: float) -> Panels:
+    """Return panels that shrink towards the joints (`innermost`), with `lowest` + `step` nodes more on each away from one.
+
+    At most `order` nodes. Arcs are cut to 60°, general curves until they are polynomials.
+    """
+    at_end = innermost(boundary, depth)
+    at_start = np.empty_like(at_end)
+    at_start[boundary.following] = at_end
+    curve: list[int] = []
+    low: list[float] = []
+    high: list[float] = []
+    orders: list[int] = []
+    for k, (a, b, length) in enumerate(zip(at_start.tolist(), at_end.tolist(), boundary.length.tolist(), strict=True)):
+        left, right = _ladder(a / length), _ladder(b / length)
+        breaks = [0.0, *left, *(1.0 - s for s in reversed(right)), 1.0]
+        count = len(breaks) - 1
+        for i in range(count):
+            from_left = i if left else count
+            from_right = count - 1 - i if right else count
+            curve.append(k)
+            low.append(breaks[i])
+            high.append(breaks[i + 1])
+            orders.append(min(order, lowest + int(step * min(from_left, from_right))))
+    panels = Panels(boundary, np.array(curve), np.array(low), np.array(high), np.array(orders))
+    for _ in range(ROUNDS):
+        swept = np.abs(boundary.sweep[panels.curve]) * (panels.high - panels.low) > TURN * (1 + 1e-9)
+        if not swept.any():
+            break
+        panels = panels.halved(swept)
+    return _resolved(panels)
+
+
+def _ladder(first: float) -> list[float]:
+    """Return the ends of panels that grow from `first` by RATIO, as long as they stay below the middle."""
+    ends = []
+    while first < 0.45:
+        ends.append(first)
+        first *= RATIO
+    return ends
+
+
+def balanced(panels: Panels, points: Complexes) -> Panels:
+    """Halve panels that are long for what is near them, until none is.
+
+    That is longer than SLACK·(2·distance + length of the other) for another panel, or than the distance to one of `points`
+    (sources inside the voids).
+    """
+    fresh: Mask = np.ones(len(panels), dtype=bool)
+    for _ in range(ROUNDS):
+        bad = _long(panels, fresh, points) & (panels.length > 4 * SHORTEST)
+        if not bad.any():
+            break
+        fresh = np.repeat(bad, np.where(bad, 2, 1))
+        panels = panels.halved(bad)
+    return panels
+
+
+def _long(panels: Panels, fresh: Mask, points: Complexes) -> Mask:
+    """Mark the panels that are too long. Only pairs with a `fresh` panel among them can have changed."""
+    s, length = panels.samples, panels.length
+    bad = np.zeros(len(panels), dtype=bool)
+    every, new = np.arange(len(panels)), np.flatnonzero(fresh)
+    pairs = [(every, new)] if len(new) == len(panels) else [(every, new), (new, every)]
+    for mine, others in pairs:
+        rows = max(1, 200_000 // (3 * max(1, len(others))))
+        q = s[others].T
+        for first in range(0, len(mine), rows):
+            p = mine[first : first + rows]
+            apart = _distance(s[p, 0], s[p, 2], q)
+            bad[p] |= (length[p, None] > SLACK * (2.0 * apart + length[others])).any(axis=1)
+    if points.size:
+        apart = _distance(s[:, 0], s[:, 2], points[None, :])
+        # the chord is nearer than the arc by its rise, at most an eighth of length times turn
+        bad |= (length[:, None] > 1.1 * apart + 0.1 * length[:, None]).any(axis=1)
+    return bad
+
+
+def _distance(a: Complexes, b: Complexes, q: Complexes) -> Floats:
+    """Return the distance (P, M) from chords a–b (P,) to the nearest of the points q (k, M) in each column."""
+    chord = (b - a)[:, None]
+    square = np.maximum(chord.real**2 + chord.imag**2, 1e-300)
+    best = np.full((len(a), q.shape[1]), np.inf)
+    for row in q:
+        d = row[None, :] - a[:, None]
+        share = np.clip((d.real * chord.real + d.imag * chord.imag) / square, 0.0, 1.0)
+        d = d - share * chord
+        np.minimum(best, d.real**2 + d.imag**2, out=best)
+    return np.sqrt(best)
