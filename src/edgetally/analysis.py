@@ -12,7 +12,7 @@ from typing import Any
 from edgetally.curves import Packed
 from edgetally.drawing.loading import load
 from edgetally.drawing.reading import DrawingFile, Reading
-from edgetally.errors import DrawingError, EdgetallyError, OutlineError, UsageError
+from edgetally.errors import DrawingError, OutlineError, UsageError
 from edgetally.findings import Finding, Severity, worst
 from edgetally.outline.assembly import assemble
 from edgetally.outline.choosing import choose
@@ -238,20 +238,14 @@ def _layers(
         chosen, hidden = drawing.named_layers(patterns)
         findings += hidden
         return chosen
-    visible = drawing.visible_layers()
-    if not visible:
+    each = drawing.read_each()
+    if not each:
         drawing.read([])  # says what there is instead
-    if len(visible) == 1:
-        return visible
+    if len(each) == 1:
+        return list(each)
     unit = units or drawing.header_unit()[0] or "mm"  # only the join gap depends on it here
-    closed = []
-    for name in visible:
-        try:
-            curves = drawing.read([name]).curves
-        except EdgetallyError:
-            continue
-        if closes(curves, gap * length_factor(gap_unit, unit)):
-            closed.append(name)
+    drawn_gap = gap * length_factor(gap_unit, unit)
+    closed = [name for name, found in each.items() if isinstance(found, Reading) and closes(found.curves, drawn_gap)]
     if len(closed) == 1:
         text = f"layer {closed[0]} was taken: it is the only visible layer that carries a closed outline"
         findings.append(Finding("layer-chosen", "note", text))
@@ -259,7 +253,7 @@ def _layers(
     if closed:
         message = f"closed outlines are on {len(closed)} layers: {', '.join(closed)}; say which with --layer"
     else:
-        message = f"no visible layer carries a closed outline; say with --layer which to read: {', '.join(visible)}"
+        message = f"no visible layer carries a closed outline; say with --layer which to read: {', '.join(each)}"
     raise DrawingError(message, [Finding("layer-missing", "error", message)])
 
 

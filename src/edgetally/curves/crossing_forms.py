@@ -56,12 +56,13 @@ def _line_circle(d: complex, unit: complex, spoke: complex, near: float) -> list
     """
     radius = abs(spoke)
     spoke_along, spoke_across = dot(unit, spoke), cross(unit, spoke)
-    sign = 1.0 if spoke_across >= 0 else -1.0
     beta = dot(unit, d) + spoke_along
-    h = abs(cross(unit, d) + spoke_across)
-    inside = spoke_along * spoke_along / (radius + abs(spoke_across)) - sign * cross(unit, d)
-    if h < radius * 0.5:
-        inside = radius - h
+    across = cross(unit, d) + spoke_across
+    h = abs(across)
+    inside = radius - h
+    if h > 0.5 * radius and across * spoke_across > 0.0:
+        sign = 1.0 if across > 0.0 else -1.0
+        inside = spoke_along * spoke_along / (radius + abs(spoke_across)) - sign * cross(unit, d)
     if inside < 0.0:
         return [-beta] if inside >= -near else []
     root = sqrt(inside * (radius + h))

@@ -12,14 +12,16 @@ Floats = NDArray[np.float64]
 
 
 class Source(NamedTuple):
-    """The DXF entity that a curve was read from."""
+    """The DXF entity that a curve was read from, and the block it stands in, "" for none."""
 
     entity: str
     handle: str
     layer: str
+    block: str = ""
 
     def __str__(self) -> str:
-        return f"{self.entity} #{self.handle}" if self.handle else self.entity
+        name = f"{self.entity} #{self.handle}" if self.handle else self.entity
+        return f"{name} in block {self.block}" if self.block else name
 
 
 UNKNOWN = Source("curve", "", "")

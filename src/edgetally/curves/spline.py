@@ -100,7 +100,7 @@ def fit_spline(
     first two derivatives agree across the first point (de Boor, A Practical Guide to Splines, chapter IV). A point
     equal to the one before it is dropped. Raises ValueError for fewer than two points that differ.
     """
-    kept = [z for z, before in zip(points, [None, *points[:-1]], strict=True) if z != before]
+    kept = [z for z, before in zip(points, [None, *points][: len(points)], strict=True) if z != before]
     if closed and len(kept) > 1 and kept[0] != kept[-1]:
         kept.append(kept[0])
     if len(kept) < 2 or not all(isfinite(z.real) and isfinite(z.imag) for z in kept):

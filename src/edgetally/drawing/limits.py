@@ -8,3 +8,9 @@ MAX_CURVES = 2_000_000
 
 MAX_COORDINATE = 1e10
 """A coordinate whose double precision is coarser than a micrometre in a millimetre drawing places nothing."""
+
+MAX_LEAVES = 4_000_000
+"""Entities after opening all block references; an array of 32 767 × 32 767 would take years."""
+
+MAX_DEPTH = 64
+"""Depth of nested blocks; drawings made by people stay below ten."""

@@ -19,7 +19,8 @@ from edgetally.section.boundary import Boundary, Ints, Mask
 # Towards a corner each panel is this many times shorter than the one before.
 RATIO = 4.0
 # A panel may be this many times longer than twice its distance to another and that one's length together.
-SLACK = 3.0
+SLACK = 4.5
+AWAY = 3.0
 # On 60° of a circle 12 nodes lose nothing, and the preimage of a point nearby is unique.
 TURN = np.pi / 3
 # Nodes of shorter panels would coincide in double precision (sizes near 1).
@@ -69,6 +70,16 @@ class Panels:
         high[first], low[first + 1] = middle[mask], middle[mask]
         return Panels(self.boundary, curve, low, high, np.repeat(self.order, times))
 
+    def inner(self, which: Ints, n: int) -> Floats:
+        """Return the curve parameters (len(which), n) of the Gauss nodes of the given panels.
+
+        Measured from the nearer end of the curve, so that panels towards its far end keep their proportions.
+        """
+        low, high = self.low[which, None], self.high[which, None]
+        nodes = 0.5 * (1.0 + legendre.rule(n)[0])
+        t: Floats = np.where(low < 0.5, low + (high - low) * nodes, high - (high - low) * nodes[::-1])
+        return t
+
     def with_order(self, order: Ints) -> Panels:
         return Panels(self.boundary, self.curve, self.low, self.high, order)
 
@@ -91,7 +102,7 @@ def _resolved(panels: Panels) -> Panels:
         rest = np.flatnonzero(~boundary.is_line[panels.curve] & ~boundary.is_arc[panels.curve])
         if not rest.size:
             break
-        t = _inner(panels, rest, SAMPLES)
+        t = panels.inner(rest, SAMPLES)
         z, slope = boundary.points(panels.curve[rest], t)
         half = 0.5 * (panels.high - panels.low)[rest]
         parts = np.abs(slope @ legendre.to_coefficients(SAMPLES).T) * half[:, None]
@@ -105,15 +116,6 @@ def _resolved(panels: Panels) -> Panels:
         mask[rest[bad]] = True
         panels = panels.halved(mask)
     return panels
-
-
-def _inner(panels: Panels, which: Ints, n: int) -> Floats:
-    """Return the curve parameters (len(which), n) of the Gauss nodes of the given panels."""
-    low, high = panels.low[which, None], panels.high[which, None]
-    nodes = legendre.rule(n)[0]
-    # measured from the nearer end of the curve, so that panels towards its far end keep their proportions
-    t: Floats = np.where(low < 0.5, low + (high - low) * (0.5 * (1.0 + nodes)), high - (high - low) * (0.5 * (1.0 - nodes)))
-    return t
 
 
 def innermost(boundary: Boundary, depth: float) -> Floats:
@@ -153,12 +155,12 @@ def graded(boundary: Boundary, depth: float, order: int, lowest: int, step: floa
         breaks = [0.0, *left, *(1.0 - s for s in reversed(right)), 1.0]
         count = len(breaks) - 1
         for i in range(count):
-            from_left = i if left else count
-            from_right = count - 1 - i if right else count
+            from_left = len(left) - i
+            from_right = len(right) - (count - 1 - i)
             curve.append(k)
             low.append(breaks[i])
             high.append(breaks[i + 1])
-            orders.append(min(order, lowest + int(step * min(from_left, from_right))))
+            orders.append(max(lowest, order - int(step * max(0, from_left - 1, from_right - 1))))
     panels = Panels(boundary, np.array(curve), np.array(low), np.array(high), np.array(orders))
     for _ in range(ROUNDS):
         swept = np.abs(boundary.sweep[panels.curve]) * (panels.high - panels.low) > TURN * (1 + 1e-9)
@@ -205,7 +207,7 @@ def _long(panels: Panels, fresh: Mask, points: Complexes) -> Mask:
         for first in range(0, len(mine), rows):
             p = mine[first : first + rows]
             apart = _distance(s[p, 0], s[p, 2], q)
-            bad[p] |= (length[p, None] > SLACK * (2.0 * apart + length[others])).any(axis=1)
+            bad[p] |= (length[p, None] > AWAY * apart + SLACK * length[others]).any(axis=1)
     if points.size:
         apart = _distance(s[:, 0], s[:, 2], points[None, :])
         # the chord is nearer than the arc by its rise, at most an eighth of length times turn
