@@ -31,7 +31,7 @@ Box = tuple[float, float, float, float]
 def result_of(curves: list[Line | Arc], unit: str = "mm") -> SectionResult:
     section = section_of(curves, unit)
     result = area_properties(section)
-    return SectionResult(section, result, dict(result.properties), result.findings, unit)
+    return SectionResult(section, section.regions, result, dict(result.properties), result.findings, unit)
 
 
 def bar(width: float, height: float, angle: float, notch: float = 0.0, at: complex = 0j) -> SectionResult:

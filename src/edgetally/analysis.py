@@ -11,13 +11,13 @@ from typing import Any
 
 from edgetally.curves import Packed
 from edgetally.drawing.loading import load
-from edgetally.drawing.reading import DrawingFile, Reading
+from edgetally.drawing.reading import DrawingFile, Reading, by_hatches
 from edgetally.errors import DrawingError, OutlineError, UsageError
 from edgetally.findings import Finding, Severity, worst
 from edgetally.outline.assembly import assemble
 from edgetally.outline.choosing import choose
 from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
-from edgetally.outline.records import Join, Outline
+from edgetally.outline.records import Join, Outline, Region
 from edgetally.outline.words import at, handles, length_text, place
 from edgetally.section.area import AreaResult, area_properties
 from edgetally.section.record import Property, Section, input_rounding
@@ -40,9 +40,10 @@ class DrawingRecord:
 
 @dataclass(frozen=True, eq=False)
 class SectionResult:
-    """One section: its geometry in real lengths, its properties by key in the unit of the results, its findings."""
+    """One section: its geometry in real lengths and as drawn, its properties by key in the unit of the results."""
 
     section: Section
+    drawn: tuple[Region, ...]
     result: AreaResult
     properties: dict[str, Property]
     findings: tuple[Finding, ...]
@@ -206,7 +207,7 @@ def _measure(drawn: Section, scale: float, out_unit: str, density: float | None)
     section = Section(drawn.name, tuple(r.scaled(scale) for r in drawn.regions), drawn.unit, drawn.input_rounding)
     result = area_properties(section, density=density)
     properties = {key: p.converted(section.unit, out_unit) for key, p in result.properties.items()}
-    return SectionResult(section, result, properties, result.findings, out_unit)
+    return SectionResult(section, drawn.regions, result, properties, result.findings, out_unit)
 
 
 def _density(density: float | str | None) -> float | None:
@@ -246,6 +247,8 @@ def _layers(
     unit = units or drawing.header_unit()[0] or "mm"  # only the join gap depends on it here
     drawn_gap = gap * length_factor(gap_unit, unit)
     closed = [name for name, found in each.items() if isinstance(found, Reading) and closes(found.curves, drawn_gap)]
+    # a hatch is the outline only where no layer has one of curves
+    closed = [name for name in closed if not by_hatches(each[name])] or closed
     if len(closed) == 1:
         text = f"layer {closed[0]} was taken: it is the only visible layer that carries a closed outline"
         findings.append(Finding("layer-chosen", "note", text))

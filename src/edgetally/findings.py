@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass
-from typing import Literal
+from typing import Any, Literal
 
 Severity = Literal["note", "warning", "error"]
 
@@ -62,6 +62,16 @@ class Finding:
     message: str
     at: tuple[float, float] | None = None
     handles: tuple[str, ...] = ()
+
+    def to_dict(self) -> dict[str, Any]:
+        """Return the finding as the documents carry it."""
+        return {
+            "code": self.code,
+            "severity": self.severity,
+            "message": self.message,
+            "at": list(self.at) if self.at else None,
+            "handles": list(self.handles),
+        }
 
     def __post_init__(self) -> None:
         if self.code not in CODES:

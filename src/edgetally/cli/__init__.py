@@ -8,7 +8,9 @@ import sys
 import click
 
 from edgetally import __version__
+from edgetally.cli.markup import markup
 from edgetally.cli.sheet import sheet
+from edgetally.cli.survey import survey
 from edgetally.cli.tally import tally
 from edgetally.errors import EdgetallyError
 
@@ -22,8 +24,10 @@ def cli() -> None:
     """
 
 
+cli.add_command(survey)
 cli.add_command(tally)
 cli.add_command(sheet)
+cli.add_command(markup)
 
 
 def main() -> None:

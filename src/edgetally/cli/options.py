@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import sys
 import tempfile
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, TypeVar
 
@@ -87,9 +88,17 @@ def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
         "out_units": options["out_units"],
         "density": options["density"],
     }
+    with copied(drawing) as (path, name):
+        return analyse(path, name=name, **settings)
+
+
+@contextmanager
+def copied(drawing: str) -> Iterator[tuple[str | Path, str | None]]:
+    """Give the path of a drawing and the name to print for it; standard input, `-`, goes to a file of its own first."""
     if drawing != "-":
-        return analyse(drawing, **settings)
+        yield drawing, None
+        return
     with tempfile.TemporaryDirectory() as folder:
         copy = Path(folder) / "standard-input.dxf"
         copy.write_bytes(sys.stdin.buffer.read())
-        return analyse(copy, name="standard input", **settings)
+        yield copy, "standard input"

@@ -34,7 +34,7 @@ def tally(drawings: tuple[str, ...], as_json: bool, as_csv: bool, svg: str | Non
     code = 0
     rows: list[list[str]] = []
     csv_units: set[str] = set()
-    for number, drawing in enumerate(_with_progress(drawings)):
+    for number, drawing in enumerate(with_progress(drawings)):
         try:
             analysis = analysed(drawing, options)
         except EdgetallyError as error:
@@ -75,7 +75,7 @@ def _write_svg(svg: str, analysis: Any, symbols: Any) -> None:
     write_whole(svg, figure_svg(analysis.sections[0], symbols).encode())
 
 
-def _with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
+def with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
     """Yield the drawings; on a terminal, and where there are several, with a bar on stderr."""
     if len(drawings) == 1 or not sys.stderr.isatty():
         yield from drawings

@@ -211,12 +211,17 @@ def _turning(piece: Bezier, p: complex, depth: int) -> float:
 
 
 def _values(coefficients: tuple[complex, ...] | list[complex] | list[float], t: Floats) -> Complexes:
-    """Return Σ cᵢ·Bᵢ(t) for an array of parameters, by repeated averaging."""
-    row = [np.full(np.shape(t), c) for c in coefficients]
+    """Return Σ cᵢ·C(n, i)·tⁱ·(1 − t)ⁿ⁻ⁱ for an array of parameters, by Horner's scheme in 1 − t."""
+    n = len(coefficients) - 1
+    if n == 0:
+        return np.full(np.shape(t), coefficients[0], dtype=complex)
     s = 1.0 - t
-    for last in range(len(row) - 1, 0, -1):
-        row = [s * row[i] + t * row[i + 1] for i in range(last)]
-    return row[0]
+    total = coefficients[0] * s
+    power = t
+    for i in range(1, n):
+        total = (total + (comb(n, i) * coefficients[i]) * power) * s
+        power = power * t
+    return np.asarray(total + coefficients[n] * power)
 
 
 def _moment_sums(z: Complexes, dz: Complexes) -> Complexes:

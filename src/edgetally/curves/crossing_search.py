@@ -24,6 +24,7 @@ SLIM = 1e-7
 # Closest approach: 7 times into the best quarter of a piece leaves its distance right to 4⁻¹⁴ of the sag.
 ZOOMS, ZOOMED = 7, np.linspace(0.0, 1.0, 9)
 SAMPLES = np.linspace(0.0, 1.0, 33)
+BOTH_ENDS = np.array([[0.0], [1.0]])
 
 Parameters = tuple[Floats, Floats]
 
@@ -40,7 +41,7 @@ def meetings(a: Curve, b: Curve, near: float) -> list[tuple[float, float]]:
     width = 1.0
     t, u = np.zeros(0), np.zeros(0)
     for level in range(DEPTH):
-        a0, a1, b0, b1 = a.points(low_a), a.points(low_a + width), b.points(low_b), b.points(low_b + width)
+        (a0, a1), (b0, b1) = a.points(low_a + width * BOTH_ENDS), b.points(low_b + width * BOTH_ENDS)
         sag_a, sag_b = a.bend * width * width / 8.0, b.bend * width * width / 8.0
         keep = _within(a0, a1, b0, b1, near + sag_a + sag_b)
         if not keep.any():

@@ -81,6 +81,18 @@ class Blocks:
                     used.setdefault(self._layers.spelled(key), 0)
         return used
 
+    def counts(self) -> dict[str, int]:
+        """Return the number of entities in each block that a reference in model space, or in such a block, shows."""
+        shown: dict[str, int] = {}
+        pending = [e for e in self._document.modelspace() if e.dxftype() == "INSERT"]
+        while pending:
+            name = str(pending.pop().dxf.get("name", ""))
+            if name not in shown and name in self._document.blocks:
+                inside = list(self._document.blocks.get(name))
+                shown[name] = len(inside)
+                pending += [e for e in inside if e.dxftype() == "INSERT"]
+        return dict(sorted(shown.items()))
+
     def reach(self, block: str, layer: str) -> frozenset[str]:
         """Return the layers, casefolded, on which a reference on `layer` to `block` shows something."""
         inside = self._layers_inside(block.casefold(), ())

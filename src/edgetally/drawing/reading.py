@@ -48,7 +48,13 @@ class Reading:
     kinds: dict[str, tuple[int, int]]
     elsewhere: int
     hatches: tuple[tuple[Source, tuple[Curve, ...]], ...] = field(default=())
+    from_hatches: bool = False
     findings: tuple[Finding, ...] = field(default=())
+
+
+def by_hatches(found: Reading | DrawingError) -> bool:
+    """Tell whether a layer's outline comes from hatches alone."""
+    return isinstance(found, Reading) and found.from_hatches
 
 
 class DrawingFile:
@@ -75,6 +81,11 @@ class DrawingFile:
     def visible_layers(self) -> list[str]:
         """Return the visible layers that show something, in the order of the drawing."""
         return [name for name in self._used if self.layers.hidden(name) is None and name.casefold() != NEVER_PLOTTED]
+
+    def hidden_layers(self) -> dict[str, str]:
+        """Return the layers that hold something but are off or frozen, with their state."""
+        states = {name: self.layers.hidden(name) for name in self._used}
+        return {name: state for name, state in states.items() if state is not None}
 
     def named_layers(self, patterns: Sequence[str]) -> tuple[list[str], list[Finding]]:
         """Return the visible layers that match the shell-style patterns, whatever the case, and the hidden ones as
@@ -225,6 +236,7 @@ class _Account:
             {kind: (self.read[kind], self.used[kind]) for kind in sorted(self.read)},
             elsewhere,
             tuple(compared),
+            bool(self._hatches and not compared),
             tuple(findings),
         )
 

@@ -43,7 +43,7 @@ def refuse_crossings(loops: Sequence[Loop]) -> None:
 
     follower = _followers(loops)
     adjacent = (follower[one] == other) | (follower[other] == one)
-    straight = ~packed.is_arc[one] & ~packed.is_arc[other]
+    straight = packed.is_straight[one] & packed.is_straight[other]
     suspects = np.concatenate([
         np.flatnonzero(straight & adjacent)[_folds(packed, follower, one, other, straight & adjacent)],
         np.flatnonzero(straight & ~adjacent)[_near(packed, one, other, straight & ~adjacent, touch)],

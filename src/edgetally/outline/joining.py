@@ -87,6 +87,12 @@ def closes(curves: Sequence[Curve], gap: float) -> bool:
     return False
 
 
+def open_ends(curves: Sequence[Curve], gap: float) -> int:
+    """Return how many ends of `curves` meet no other."""
+    _, ends = _sort(curves)
+    return int((_pair(ends, gap).partner < 0).sum()) if ends.curves else 0
+
+
 def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], _Ends]:
     """Part the curves that are closed by themselves from those with two ends."""
     magnitude = max((max(abs(p.real), abs(p.imag)) for c in curves for p in (c.start, c.end)), default=0.0)

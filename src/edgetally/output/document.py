@@ -8,7 +8,6 @@ from edgetally import __version__
 
 if TYPE_CHECKING:
     from edgetally.analysis import Analysis, SectionResult
-    from edgetally.findings import Finding
 
 FORMAT = "edgetally.tally/1"
 
@@ -39,7 +38,7 @@ def document(analysis: Analysis) -> dict[str, Any]:
             },
         },
         "sections": [_section(section) for section in analysis.sections],
-        "findings": [_finding(finding) for finding in analysis.findings],
+        "findings": [finding.to_dict() for finding in analysis.findings],
     }
 
 
@@ -50,15 +49,5 @@ def _section(section: SectionResult) -> dict[str, Any]:
         "properties": {
             key: {"value": p.value, "unit": str(p.unit), "error": p.error} for key, p in section.properties.items()
         },
-        "findings": [_finding(finding) for finding in section.findings],
-    }
-
-
-def _finding(finding: Finding) -> dict[str, Any]:
-    return {
-        "code": finding.code,
-        "severity": finding.severity,
-        "message": finding.message,
-        "at": list(finding.at) if finding.at else None,
-        "handles": list(finding.handles),
+        "findings": [finding.to_dict() for finding in section.findings],
     }

@@ -118,6 +118,16 @@ class Boundary:
                     bent[row, k] = np.angle(second / first) / (speed * step)
         return bent[0], bent[1]
 
+    @cached_property
+    def rough(self) -> Mask:
+        """Whether direction or curvature jumps at each curve's end."""
+        after = self.following
+        curved_start, curved_end = self.end_curvatures
+        shorter = np.minimum(self.length, self.length[after])
+        jump = np.abs(curved_start[after] - curved_end) * shorter
+        marked: Mask = (np.abs(self.turn) > 1e-10) | (jump > 1e-6)
+        return marked
+
     def points(self, curve: Ints, t: Floats) -> tuple[Complexes, Complexes]:
         """Return z(t) and z′(t) of the numbered curves (P,) at parameters t (P, n), both (P, n)."""
         z, slope = np.empty(t.shape, dtype=complex), np.empty(t.shape, dtype=complex)

@@ -21,11 +21,11 @@ RATIO = 4.0
 # A panel may be this many times longer than twice its distance to another and that one's length together.
 SLACK = 4.5
 AWAY = 3.0
-# On 60° of a circle 12 nodes lose nothing, and the preimage of a point nearby is unique.
-TURN = np.pi / 3
+# On 90° of a circle few nodes do, and the preimage of a point nearby is unique.
+TURN = np.pi / 2
 # Nodes of shorter panels would coincide in double precision (sizes near 1).
 SHORTEST = 1e-11
-# A joint that turns by less is smooth, one whose curvatures differ by less has none.
+# A joint that turns by less is smooth.
 SMOOTH = 1e-10
 # A general curve is halved until its polynomial of degree 15 has ended.
 SAMPLES = 16
@@ -61,13 +61,29 @@ class Panels:
         true = self.boundary.length[self.curve] * (self.high - self.low)
         return np.where(arc, true, chords)
 
+    @cached_property
+    def joint_ends(self) -> tuple[Mask, Mask]:
+        """Whether a panel starts, and whether it ends, at a joint where direction or curvature jumps."""
+        rough = self.boundary.rough
+        starts = np.empty_like(rough)
+        starts[self.boundary.following] = rough
+        return (self.low == 0.0) & starts[self.curve], (self.high == 1.0) & rough[self.curve]
+
     def halved(self, mask: Mask) -> Panels:
         """Return the panels with the marked ones cut in two equal parts of the same order."""
+        return self._cut(mask, 0.5 * (self.low + self.high))
+
+    def refined(self, mask: Mask) -> Panels:
+        """Return the panels with the marked ones cut in two: those at a joint near it, by RATIO, the others in the middle."""
+        starts, ends = self.joint_ends
+        share = np.where(starts & ~ends, 1.0 / RATIO, np.where(ends & ~starts, 1.0 - 1.0 / RATIO, 0.5))
+        return self._cut(mask & (self.length > 4 * SHORTEST), self.low + share * (self.high - self.low))
+
+    def _cut(self, mask: Mask, at: Floats) -> Panels:
         times = np.where(mask, 2, 1)
-        middle = 0.5 * (self.low + self.high)
         curve, low, high = (np.repeat(a, times) for a in (self.curve, self.low, self.high))
         first = (np.cumsum(times) - times)[mask]
-        high[first], low[first + 1] = middle[mask], middle[mask]
+        high[first], low[first + 1] = at[mask], at[mask]
         return Panels(self.boundary, curve, low, high, np.repeat(self.order, times))
 
     def inner(self, which: Ints, n: int) -> Floats:
@@ -85,7 +101,7 @@ class Panels:
 
 
 def whole(boundary: Boundary, order: int = 16) -> Panels:
-    """Return panels fine enough for the curves themselves: lines whole, arcs to 60°, others until they are polynomials."""
+    """Return panels fine enough for the curves themselves: lines whole, arcs to 90°, others until they are polynomials."""
     count = len(boundary)
     curve = np.arange(count)
     pieces = np.maximum(1, np.ceil(np.abs(boundary.sweep) / TURN * (1 - 1e-12)).astype(int))
@@ -96,7 +112,7 @@ def whole(boundary: Boundary, order: int = 16) -> Panels:
 
 
 def _resolved(panels: Panels) -> Panels:
-    """Halve panels on general curves until position and speed are polynomials there and turn by at most 60°."""
+    """Halve panels on general curves until position and speed are polynomials there and turn by at most 90°."""
     boundary = panels.boundary
     for _ in range(ROUNDS):
         rest = np.flatnonzero(~boundary.is_line[panels.curve] & ~boundary.is_arc[panels.curve])
@@ -122,26 +138,21 @@ def innermost(boundary: Boundary, depth: float) -> Floats:
     """Return for each joint the length of the panels next to it, inf where nothing asks for short ones.
 
     With ω ~ |turn|·r^{π/a} an error of 10^{−depth} is met at r = (10^{−depth}/|turn|)^{a/2π}, as a share of half the shorter
-    neighbour. Where only the curvature jumps, ω ~ r²·log r, taken like a = π/3. `depth` is in decades.
+    neighbour. `depth` is in decades. Where only the curvature jumps, refinement has to show whether it matters.
     """
     angle = np.pi - boundary.turn
-    after = boundary.following
-    shorter = np.minimum(boundary.length, boundary.length[after])
-    strength = np.minimum(np.abs(boundary.turn), 1.0)
-    with np.errstate(divide="ignore"):
-        share = np.minimum(1.0, (10.0**-depth / strength) ** (angle / (2 * np.pi)))
-    share[np.abs(boundary.turn) < SMOOTH] = 1.0
-    curved_start, curved_end = boundary.end_curvatures
-    jump = np.abs(curved_start[after] - curved_end) * shorter > 1e-6
-    share = np.where(jump, np.minimum(share, 10.0 ** (-depth / 6)), share)
-    result: Floats = np.where(share < 1.0, np.maximum(0.5 * shorter * share, SHORTEST), np.inf)
+    shorter = np.minimum(boundary.length, boundary.length[boundary.following])
+    strength = np.clip(np.abs(boundary.turn), 1e-300, 1.0)
+    share = np.minimum(1.0, (10.0**-depth / strength) ** (angle / (2 * np.pi)))
+    rough = (np.abs(boundary.turn) >= SMOOTH) & (share < 1.0)
+    result: Floats = np.where(rough, np.maximum(0.5 * shorter * share, SHORTEST), np.inf)
     return result
 
 
-def graded(boundary: Boundary, depth: float, order: int, lowest: int, step: float) -> Panels:
-    """Return panels that shrink towards the joints (`innermost`), with `lowest` + `step` nodes more on each away from one.
+def graded(boundary: Boundary, depth: float, order: int, lowest: int) -> Panels:
+    """Return panels that shrink towards the corners (`innermost`), with one node less for every two panels nearer to one.
 
-    At most `order` nodes. Arcs are cut to 60°, general curves until they are polynomials.
+    Between `lowest` and `order` nodes. Arcs are cut to 90°, general curves until they are polynomials.
     """
     at_end = innermost(boundary, depth)
     at_start = np.empty_like(at_end)
@@ -155,12 +166,11 @@ def graded(boundary: Boundary, depth: float, order: int, lowest: int, step: floa
         breaks = [0.0, *left, *(1.0 - s for s in reversed(right)), 1.0]
         count = len(breaks) - 1
         for i in range(count):
-            from_left = len(left) - i
-            from_right = len(right) - (count - 1 - i)
+            inward = max(1, len(left) - i, len(right) - (count - 1 - i)) - 1
             curve.append(k)
             low.append(breaks[i])
             high.append(breaks[i + 1])
-            orders.append(max(lowest, order - int(step * max(0, from_left - 1, from_right - 1))))
+            orders.append(max(lowest, order - inward // 2))
     panels = Panels(boundary, np.array(curve), np.array(low), np.array(high), np.array(orders))
     for _ in range(ROUNDS):
         swept = np.abs(boundary.sweep[panels.curve]) * (panels.high - panels.low) > TURN * (1 + 1e-9)

@@ -1,0 +1,59 @@
+"""One resolution: everything that one set of panels gives, from one matrix."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from edgetally.curves.curve import Complexes, Floats
+from edgetally.section import shear as flexural
+from edgetally.section import torsion as torsional
+from edgetally.section.cauchy import equation
+from edgetally.section.frame import Frame
+from edgetally.section.nodes import Nodes
+from edgetally.section.panels import Panels
+from edgetally.section.shear import Shear
+from edgetally.section.torsion import Torsion
+
+
+@dataclass(frozen=True, eq=False)
+class Resolution:
+    """Torsion and shear of the region in its frame, on one set of panels.
+
+    `shear` is at the Poisson's ratio asked for, `plain` at ν = 0; `coarseness` (P,) says how much of the solution the last
+    Legendre coefficients of each panel still hold.
+    """
+
+    nodes: Nodes
+    torsion: Torsion
+    shear: Shear
+    plain: Shear
+    coarseness: Floats
+
+
+def resolve(frame: Frame, panels: Panels, points: Complexes, poisson: float) -> Resolution:
+    """Solve on the given panels; `points` (V,) lie inside the voids. Raises numpy's LinAlgError on a singular matrix."""
+    nodes = Nodes.on(panels)
+    parts = flexural.flexure(nodes, points)
+    v, rate = torsional.conjugate(nodes)
+    system = equation(nodes, np.column_stack([v, parts.single]), np.column_stack([rate, parts.single_rate]))
+    solution = np.linalg.solve(system.matrix, system.right)
+    del system
+    harmonic = solution[:, 1:] + parts.sources
+    turned = torsional.torsion(nodes, solution[:, 0], frame.moments, points)
+    bent = flexural.shear(nodes, harmonic, parts.rate, frame.moments, poisson)
+    plain = bent if poisson == 0.0 else flexural.shear(nodes, harmonic, parts.rate, frame.moments, 0.0)
+    fields = np.column_stack([solution, turned.omega])
+    return Resolution(nodes, turned, bent, plain, _coarseness(nodes, fields))
+
+
+def _coarseness(nodes: Nodes, fields: Floats) -> Floats:
+    """Return the tail of each field (N, R) on each panel relative to the field's range, times √(half length), the largest."""
+    result = np.zeros(len(nodes.panels))
+    root = np.sqrt(0.5 * nodes.panels.length)
+    for field in fields.T:
+        spread = float(np.ptp(field))
+        if spread > 0.0:
+            np.maximum(result, nodes.tails(field) / spread * root, out=result)
+    return result
