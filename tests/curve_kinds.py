@@ -65,3 +65,11 @@ def chopped(curve: Curve, pieces: int = 400) -> np.ndarray:
 def clearance(curve: Curve, p: complex) -> float:
     """About how far p is from the curve."""
     return float(np.abs(chopped(curve) - p).min())
+
+
+def runs_back(curve: Curve) -> bool:
+    """Whether it is a Bézier piece squeezed into a line, which may run back over itself."""
+    if not isinstance(curve, Bezier) or curve.degree == 1:
+        return False
+    across = [((p - curve.start) * (curve.end - curve.start).conjugate()).imag for p in curve.control]
+    return max(across) - min(across) <= 1

@@ -5,12 +5,13 @@ from types import SimpleNamespace
 
 import numpy as np
 import pytest
-from curve_kinds import angles, chopped, clearance, curves, places, shares, size_of
+from curve_kinds import angles, chopped, clearance, curves, places, runs_back, shares, size_of
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
 from edgetally.curves import Arc, Bezier, Curve, EllipticArc, Line, Packed, affine_image
 from edgetally.curves.green import moments
+from edgetally.curves.intersections import nearest
 
 EPS = 2.0**-52
 SAMPLES = np.linspace(0, 1, 33)
@@ -85,7 +86,7 @@ def test_reversed_runs_the_other_way(curve: Curve, p: complex) -> None:
     assert np.abs(back.points(SAMPLES) - curve.points(1 - SAMPLES)).max() <= 128 * EPS * size
     assert back.length == pytest.approx(curve.length, rel=1e-13)
     assert area(*closing(back)) == pytest.approx(-area(*closing(curve)), abs=1e-13 * (size + curve.length) ** 2)
-    assume(clearance(curve, p) > 1e-3 * size)
+    assume(nearest(curve, p)[0] > 1e-3 * size)
     assert back.turning(p) == pytest.approx(-curve.turning(p), abs=1e-10)
 
 
@@ -101,7 +102,7 @@ def test_moved_and_mirrored_are_the_images_of_the_points(
     assert np.abs(mirror.points(SAMPLES) - curve.points(SAMPLES).conj()).max() <= 128 * EPS * size_of(curve)
     assert there.length == pytest.approx(scale * curve.length, rel=1e-13)
     assert mirror.length == pytest.approx(curve.length, rel=1e-13)
-    assume(clearance(curve, p) > 1e-3 * size_of(curve))
+    assume(nearest(curve, p)[0] > 1e-3 * size_of(curve))
     assert there.turning(factor * p + shift) == pytest.approx(curve.turning(p), abs=1e-10)
     assert mirror.turning(p.conjugate()) == pytest.approx(-curve.turning(p), abs=1e-10)
 
@@ -137,7 +138,7 @@ def test_a_closed_loop_turns_by_whole_turns(parts: list[Curve], points: list[com
         loop.append(part)
     if loop[-1].end != loop[0].start:
         loop.append(Line(loop[-1].end, loop[0].start))
-    points = [p for p in points if min(clearance(c, p) for c in loop) > 1e-3]
+    points = [p for p in points if min(nearest(c, p)[0] for c in loop) > 1e-3]
     assume(points)
     packed = Packed.of(loop)
     turns = packed.turning(np.array(points))
@@ -225,7 +226,7 @@ def test_a_point_on_the_chord_is_passed_on_the_arcs_side(sweep: float, ratio: fl
 @given(curves, shares, st.sampled_from([1e-7, 1e-9]))
 def test_turning_grows_by_a_whole_turn_where_a_point_crosses_to_the_left(curve: Curve, t: float, gap: float) -> None:
     slope = curve.derivative(t)
-    assume(abs(slope) > 0.1)
+    assume(abs(slope) > 0.1 and not runs_back(curve))
     aside = gap * 1j * slope / abs(slope)
     left, right = curve.turning(curve.point(t) + aside), curve.turning(curve.point(t) - aside)
     assert left - right == pytest.approx(tau, abs=1e-3)

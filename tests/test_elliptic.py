@@ -74,8 +74,9 @@ def test_length_against_the_elliptic_integral(ratio: float, start: float) -> Non
 
 @pytest.mark.parametrize(
     ("start", "end", "sweep"),
-    [(0, tau, tau), (0, 0, tau), (1, 1, tau), (0.5, 2, 1.5), (5, 1, 1 - 5 + tau), (-1, 1, 2),
-     (0, 6.283185307179586, tau), (0, 6.28318530718, tau), (radians(350), radians(370), radians(20)), (3, 3 + 3 * tau, tau), (2, 1, tau - 1)],
+    [(0, tau, tau), (0, 0, tau), (1, 1, tau), (0.5, 2, 1.5), (5, 1, 1 - 5 + tau), (-1, 1, 2), (2, 1, tau - 1),
+     (0, 6.283185307179586, tau), (0, 6.28318530718, tau), (radians(350), radians(370), radians(20)),
+     (3, 3 + 3 * tau, tau), (tau, 0, tau), (tau, 1e-15, tau)],
 )  # fmt: skip
 def test_dxf_parameters(start: float, end: float, sweep: float) -> None:
     arc = EllipticArc.from_axes(1 + 1j, 3 + 4j, 0.5, start, end)

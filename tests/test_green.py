@@ -7,7 +7,7 @@ import numpy as np
 import pytest
 from curve_kinds import beziers, curves, elliptic_arcs, places
 from fontTools.pens.momentsPen import MomentsPen
-from hypothesis import given, settings
+from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
 from edgetally.curves import Arc, Bezier, Curve, EllipticArc, Line, Packed
@@ -213,7 +213,7 @@ def test_moments_follow_the_frame(some: list[Curve], origin: complex, angle: flo
     wanted = (a, c * x + s * y, c * y - s * x, c * c * xx + 2 * c * s * xy + s * s * yy,
               (c * c - s * s) * xy + c * s * (yy - xx), s * s * xx - 2 * c * s * xy + c * c * yy)  # fmt: skip
     for ours, value, (i, j) in zip((m.m00, m.m10, m.m01, m.m20, m.m11, m.m02), wanted, ORDERS, strict=True):
-        assert ours == pytest.approx(value, abs=1e-14 * length * far ** (i + j + 1))
+        assert ours == pytest.approx(value, abs=4e-14 * length * far ** (i + j + 1))
 
 
 @few
@@ -222,10 +222,11 @@ def test_slack_bounds_a_shift_of_the_boundary(some: list[Curve], shift: complex)
     loop = closed(*some)
     tiny = shift / 50 * 1e-6
     m = moments(Packed.of(loop), input_rounding=abs(tiny))
+    assume(abs(m.m00) > 1)  # the bound is of the first order: a loop without breadth has only the second
     moved = moments(Packed.of([k.moved(1, tiny) for k in loop]))
     keys = ("m00", "m10", "m01", "m20", "m11", "m02")
     for key in keys:
-        assert abs(getattr(moved, key) - getattr(m, key)) <= 1.001 * m.slack[key] + 1e-300
+        assert abs(getattr(moved, key) - getattr(m, key)) <= 1.001 * m.slack[key]
 
 
 @few

@@ -24,6 +24,10 @@ from edgetally.section.record import Property, Section, input_rounding
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
 
 
+SAME_AREA = 1e-3
+"""A hatch fills what the outline encloses to this share: CAD programs store its arcs with fewer digits."""
+
+
 @dataclass(frozen=True, slots=True)
 class DrawingRecord:
     """The drawing a result came from and how it was read."""
@@ -187,6 +191,7 @@ def analyse(
     except OutlineError as error:
         raise _with_skips(error, reading) from None
     findings += [_join_finding(join, unit) for join in outline.joins]
+    findings += _hatch_findings(reading, outline, drawn_gap, unit)
     chosen = choose(outline.regions, select, unit)
     for number in outline.islands:
         x0, y0, _, _ = outline.regions[number].box
@@ -286,6 +291,33 @@ def _join_finding(join: Join, unit: str) -> Finding:
     message = f"gap of {length_text(join.gap, unit)} joined at {place(join.at)} between {a} and {b}"
     severity: Severity = "note" if join.gap * MM_PER[unit] <= DEFAULT_GAP_MM * (1 + 1e-9) else "warning"
     return Finding("gap-joined", severity, message, at(join.at), handles((a, b)))
+
+
+def _hatch_findings(reading: Reading, outline: Outline, gap: float, unit: str) -> list[Finding]:
+    """Compare the area inside each hatch with that of the regions it lies over."""
+    findings = []
+    for source, curves in reading.hatches:
+        try:
+            hatched = assemble(curves, gap=gap, unit=unit)
+        except OutlineError as error:
+            text = f"{source} was not compared with the outline: {str(error).splitlines()[0]}"
+            findings.append(Finding("hatch-differs", "note", text, handles=(source.handle,)))
+            continue
+        x0, y0, x1, y1 = Packed.of(curves).box
+        over = [r for r in outline.regions if x0 <= _middle(r).real <= x1 and y0 <= _middle(r).imag <= y1]
+        inside, drawn = sum(r.area for r in hatched.regions), sum(r.area for r in over)
+        if over and abs(inside - drawn) > SAME_AREA * drawn:
+            text = (
+                f"{source} fills {inside:.6g} {unit}^2, the outline there encloses {drawn:.6g} {unit}^2: "
+                f"{100 * (inside / drawn - 1):+.2g} %; check which of them is meant"
+            )
+            findings.append(Finding("hatch-differs", "warning", text, (x0, y0), (source.handle,)))
+    return findings
+
+
+def _middle(region: Region) -> complex:
+    x0, y0, x1, y1 = region.box
+    return complex(0.5 * (x0 + x1), 0.5 * (y0 + y1))
 
 
 def _with_skips(error: OutlineError, reading: Reading) -> OutlineError:

@@ -50,9 +50,8 @@ class EllipticArc:
         Raises ValueError if an axis is zero.
         """
         sweep = fmod(end - start, tau)
-        if sweep < WHOLE:  # from 350° to 10°, or a whole turn
-            sweep += tau
-        if abs(sweep - tau) < WHOLE:
+        sweep = sweep if sweep > 0.0 else sweep + tau  # from 350° to 10°
+        if min(sweep, tau - sweep) < WHOLE:
             sweep = tau
         u, v = 0.5 * major * (1.0 + ratio) * rect(1.0, start), 0.5 * major * (1.0 - ratio) * rect(1.0, -start)
         return EllipticArc.normalised(centre + u + v, u, v, sweep, source)

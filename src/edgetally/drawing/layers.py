@@ -12,6 +12,9 @@ from ezdxf.lldxf.const import DXFError
 from edgetally.errors import DrawingError
 from edgetally.findings import Finding
 
+# the broken line types that CAD programs deliver, by the beginnings of their names (common practice, no source)
+_BROKEN_NAMES = ("center", "centre", "hidden", "phantom", "dash", "dot", "divide", "border", "acad_iso")
+
 NEVER_PLOTTED = "defpoints"
 """The layer of dimension points, which no CAD program plots: it carries no outline unless it is asked for by name."""
 
@@ -54,8 +57,8 @@ class Layers:
             return False
         try:
             pattern = self._document.linetypes.get(line_type).pattern_tags.tags
-        except (DXFError, AttributeError):
-            return False
+        except (DXFError, AttributeError):  # named, but not defined in the file: then the name has to tell
+            return line_type.casefold().startswith(_BROKEN_NAMES)
         return any(tag.code == 49 and tag.value < 0 for tag in pattern)
 
     def named(self, patterns: Sequence[str], used: Sequence[str]) -> tuple[list[str], list[tuple[str, str]]]:

@@ -67,7 +67,7 @@ class Preimages:
         if arc.any():
             out = away[arc] / self._spoke[panels[arc]]
             # log(1 + out), whose real part would cancel on a flat arc
-            growth = 0.5 * np.log1p(np.maximum(out.real * (2.0 + out.real) + out.imag**2, -1.0 + 1e-300))
+            growth = 0.5 * np.log1p(np.maximum(out.real * (2.0 + out.real) + out.imag**2, -1.0 + 2.0**-53))
             t[arc] = (np.arctan2(out.imag, 1.0 + out.real) - 1j * growth) / self._bend[panels[arc]]
         rest = ~line & ~arc
         if rest.any():

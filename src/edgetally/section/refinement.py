@@ -1,0 +1,78 @@
+"""Refinement: panels from coarse to fine, until two resolutions agree."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+import numpy as np
+
+from edgetally.curves.curve import Complexes
+from edgetally.section.boundary import Mask
+from edgetally.section.frame import Frame
+from edgetally.section.panels import Panels, balanced, graded
+from edgetally.section.resolution import Resolution, resolve
+
+# Where to begin: decades of grading at corners and nodes on a panel. The coarser pairs are for outlines of very many curves.
+BEGINNINGS = ((6.0, 6), (5.0, 4), (3.0, 3))
+LOWEST = 4
+# Panels whose coarseness exceeds this are cut in the first round; each round asks for ten times less.
+CUT = 1e-4
+# Panels with this share of it get more nodes.
+ENRICH = 0.1
+MORE_NODES = 2
+MOST_NODES = 16
+# A round that adds fewer unknowns than this share would compare a resolution with itself.
+GROWTH = 0.15
+# Below this coarseness there is nothing but rounding.
+ROUNDING = 1e-13
+# Corners that turn right by more than this [rad] have unbounded stress, and are refined in every round.
+SHARP = 1e-3
+
+
+class TooManyUnknownsError(Exception):
+    """The coarsest panels already need more unknowns than allowed."""
+
+    def __init__(self, needed: int) -> None:
+        super().__init__(needed)
+        self.needed = needed
+
+
+def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> Iterator[Resolution]:
+    """Yield ever finer resolutions, as long as their unknowns stay within `limit` and there is anything left to refine.
+
+    Raises TooManyUnknownsError if not even the coarsest does.
+    """
+    for depth, order in BEGINNINGS:
+        panels = balanced(graded(frame.boundary, depth, order, min(LOWEST, order)), points)
+        unknowns = int(panels.order.sum())
+        if unknowns <= limit:
+            break
+    else:
+        raise TooManyUnknownsError(unknowns)
+    cut = CUT
+    while True:
+        resolution = resolve(frame, panels, points, poisson)
+        yield resolution
+        panels = _finer(resolution, cut, points)
+        if int(panels.order.sum()) > limit or cut < ROUNDING:
+            return
+        cut *= 0.1
+
+
+def _finer(resolution: Resolution, cut: float, points: Complexes) -> Panels:
+    panels, coarseness = resolution.nodes.panels, resolution.coarseness
+    enriched = np.minimum(panels.order + MORE_NODES, MOST_NODES)
+    order = np.where(coarseness > ENRICH * cut, enriched, panels.order)
+    mask: Mask = (coarseness > cut) | _at_sharp_corner(panels)
+    finer = balanced(panels.with_order(order).refined(mask), points)
+    if finer.order.sum() < (1.0 + GROWTH) * panels.order.sum():
+        finer = balanced(panels.with_order(enriched).refined(mask), points)
+    return finer
+
+
+def _at_sharp_corner(panels: Panels) -> Mask:
+    boundary = panels.boundary
+    sharp = boundary.turn < -SHARP
+    starts = np.empty_like(sharp)
+    starts[boundary.following] = sharp
+    return ((panels.low == 0.0) & starts[panels.curve]) | ((panels.high == 1.0) & sharp[panels.curve])
