@@ -213,7 +213,8 @@ def test_moments_follow_the_frame(some: list[Curve], origin: complex, angle: flo
     wanted = (a, c * x + s * y, c * y - s * x, c * c * xx + 2 * c * s * xy + s * s * yy,
               (c * c - s * s) * xy + c * s * (yy - xx), s * s * xx - 2 * c * s * xy + c * c * yy)  # fmt: skip
     for ours, value, (i, j) in zip((m.m00, m.m10, m.m01, m.m20, m.m11, m.m02), wanted, ORDERS, strict=True):
-        assert ours == pytest.approx(value, abs=4e-14 * length * far ** (i + j + 1))
+        # rounding all along the boundary, and at the ends where the neighbours miss each other by some ε
+        assert ours == pytest.approx(value, abs=4e-15 * (10 * length + far) * far ** (i + j + 1))
 
 
 @few

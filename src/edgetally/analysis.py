@@ -190,6 +190,7 @@ def analyse(
         outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
     except OutlineError as error:
         raise _with_skips(error, reading) from None
+    findings += outline.findings
     findings += [_join_finding(join, unit) for join in outline.joins]
     findings += _hatch_findings(reading, outline, drawn_gap, unit)
     chosen = choose(outline.regions, select, unit)

@@ -19,6 +19,7 @@ CODES: dict[str, str] = {
     "open-chain": "curves that form no closed loop",
     "duplicate-removed": "a curve drawn twice was counted once",
     "overlap-removed": "curves that ran over each other were counted once",
+    "edge-shared": "closed figures that share an edge were taken as one solid",
     "crossing": "two curves cross, touch or run over each other",
     "branch": "three or more curve ends meet at one point",
     "stray-curve": "a curve that belongs to no outline was left out",

@@ -51,7 +51,7 @@ def intersect(a: Curve, b: Curve, tolerance: float) -> list[tuple[float, float, 
     """
     tolerance = max(tolerance, ROUNDING * _size(a, b))
     found = _end_contacts(a, b, tolerance)
-    runs = overlap(a, b, tolerance) if len(found) > 1 else []
+    runs = _runs(a, b, found, tolerance)
     for t, u in _starts(a, b, tolerance, runs):
         if 0.0 <= t <= 1.0 and 0.0 <= u <= 1.0:
             z, w = a.point(t), b.point(u)
@@ -71,10 +71,12 @@ def overlap(a: Curve, b: Curve, tolerance: float) -> list[tuple[Range, Range]]:
     out; one that comes back to its own start (the same circle twice) is given in two halves.
     """
     tolerance = max(tolerance, ROUNDING * _size(a, b))
-    marks = sorted((c.t, c.u) for c in _end_contacts(a, b, tolerance))
-    if len(marks) < 2:
-        return []
-    found = []
+    return _runs(a, b, _end_contacts(a, b, tolerance), tolerance)
+
+
+def _runs(a: Curve, b: Curve, ends: Sequence[Contact], tolerance: float) -> list[tuple[Range, Range]]:
+    marks = sorted((c.t, c.u) for c in ends)
+    found: list[tuple[Range, Range]] = []
     for (t0, u0), (t1, u1) in pairwise(marks):
         middle = 0.5 * (t0 + t1)
         z = a.point(middle)

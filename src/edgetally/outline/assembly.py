@@ -8,6 +8,7 @@ from edgetally.curves import Curve
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
 from edgetally.outline.crossings import refuse_crossings
+from edgetally.outline.duplicates import without_duplicates
 from edgetally.outline.joining import DEFAULT_GAP_MM, close_loops
 from edgetally.outline.nesting import nest
 from edgetally.outline.records import Loop, Outline
@@ -24,13 +25,14 @@ def assemble(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "
     `gap` is the join gap in `unit`, the drawing's unit; the default is 0.01 mm. Raises OutlineError with places,
     handles and a remedy for an open chain, a branch, a join too wide, a crossing, a loop without area, no loop at all.
     """
-    loops, joins = close_loops(curves, DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap, unit)
+    cleared = without_duplicates(curves)
+    loops, joins = close_loops(cleared.curves, DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap, unit)
     if not loops:
         raise OutlineError("no curve there encloses an area")
     _refuse_flat(loops)
     refuse_crossings(loops)
     regions, islands = nest(loops)
-    return Outline(tuple(regions), tuple(joins), tuple(islands))
+    return Outline(tuple(regions), tuple(joins), tuple(islands), tuple(cleared.findings))
 
 
 def _refuse_flat(loops: Sequence[Loop]) -> None:

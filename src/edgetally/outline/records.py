@@ -7,6 +7,7 @@ from functools import cached_property
 
 from edgetally.curves import Curve, Packed, Source
 from edgetally.curves.green import enclosed_area
+from edgetally.findings import Finding
 
 
 @dataclass(frozen=True, slots=True)
@@ -84,3 +85,5 @@ class Outline:
     joins: tuple[Join, ...]
     islands: tuple[int, ...]
     """Indices of the regions that lie inside a void of another."""
+    findings: tuple[Finding, ...] = ()
+    """What was removed on the way, beside the joins."""

@@ -25,8 +25,10 @@ AWAY = 3.0
 TURN = np.pi / 2
 # Nodes of shorter panels would coincide in double precision (sizes near 1).
 SHORTEST = 1e-11
-# A joint that turns by less is smooth.
-SMOOTH = 1e-10
+# Joints that turn by less [rad], and those where only the curvature jumps, are graded when refinement shows the need.
+WEAK = 0.15
+# Nodes on a chord between two such joints at first.
+CHORD_NODES = 4
 # A general curve is halved until its polynomial of degree 15 has ended.
 SAMPLES = 16
 ENDED = 1e-13
@@ -138,13 +140,13 @@ def innermost(boundary: Boundary, depth: float) -> Floats:
     """Return for each joint the length of the panels next to it, inf where nothing asks for short ones.
 
     With ω ~ |turn|·r^{π/a} an error of 10^{−depth} is met at r = (10^{−depth}/|turn|)^{a/2π}, as a share of half the shorter
-    neighbour. `depth` is in decades. Where only the curvature jumps, refinement has to show whether it matters.
+    neighbour. `depth` is in decades.
     """
     angle = np.pi - boundary.turn
     shorter = np.minimum(boundary.length, boundary.length[boundary.following])
     strength = np.clip(np.abs(boundary.turn), 1e-300, 1.0)
     share = np.minimum(1.0, (10.0**-depth / strength) ** (angle / (2 * np.pi)))
-    rough = (np.abs(boundary.turn) >= SMOOTH) & (share < 1.0)
+    rough = (np.abs(boundary.turn) >= WEAK) & (share < 1.0)
     result: Floats = np.where(rough, np.maximum(0.5 * shorter * share, SHORTEST), np.inf)
     return result
 
@@ -157,6 +159,8 @@ def graded(boundary: Boundary, depth: float, order: int, lowest: int) -> Panels:
     at_end = innermost(boundary, depth)
     at_start = np.empty_like(at_end)
     at_start[boundary.following] = at_end
+    slight = (np.abs(boundary.turn) < WEAK) & (boundary.turn != 0.0) & boundary.is_line
+    chord = slight & np.roll(slight, 1)
     curve: list[int] = []
     low: list[float] = []
     high: list[float] = []
@@ -170,7 +174,8 @@ def graded(boundary: Boundary, depth: float, order: int, lowest: int) -> Panels:
             curve.append(k)
             low.append(breaks[i])
             high.append(breaks[i + 1])
-            orders.append(max(lowest, order - inward // 2))
+            most = min(order, CHORD_NODES) if chord[k] else order
+            orders.append(max(lowest, most - inward // 2))
     panels = Panels(boundary, np.array(curve), np.array(low), np.array(high), np.array(orders))
     for _ in range(ROUNDS):
         swept = np.abs(boundary.sweep[panels.curve]) * (panels.high - panels.low) > TURN * (1 + 1e-9)

@@ -17,6 +17,8 @@ BEGINNINGS = ((6.0, 6), (5.0, 4), (3.0, 3))
 LOWEST = 4
 # Panels whose coarseness exceeds this are cut in the first round; each round asks for ten times less.
 CUT = 1e-4
+# At joints, where the solution is not smooth, the coefficients fall slowly, and this share of it is enough for a cut.
+JOINT = 0.3
 # Panels with this share of it get more nodes.
 ENRICH = 0.1
 MORE_NODES = 2
@@ -63,7 +65,9 @@ def _finer(resolution: Resolution, cut: float, points: Complexes) -> Panels:
     panels, coarseness = resolution.nodes.panels, resolution.coarseness
     enriched = np.minimum(panels.order + MORE_NODES, MOST_NODES)
     order = np.where(coarseness > ENRICH * cut, enriched, panels.order)
-    mask: Mask = (coarseness > cut) | _at_sharp_corner(panels)
+    starts, ends = panels.joint_ends
+    at_joint = (coarseness > JOINT * cut) & (starts | ends)
+    mask: Mask = (coarseness > cut) | at_joint | _at_sharp_corner(panels)
     finer = balanced(panels.with_order(order).refined(mask), points)
     if finer.order.sum() < (1.0 + GROWTH) * panels.order.sum():
         finer = balanced(panels.with_order(enriched).refined(mask), points)

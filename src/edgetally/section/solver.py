@@ -16,6 +16,7 @@ import numpy as np
 from edgetally.curves.curve import Complexes, Curve, Floats
 from edgetally.errors import EdgetallyError
 from edgetally.findings import Finding
+from edgetally.section.chords import smoothed
 from edgetally.section.frame import Frame
 from edgetally.section.refinement import TooManyUnknownsError, resolutions
 from edgetally.section.resolution import Resolution
@@ -26,13 +27,15 @@ from edgetally.section.void_points import void_points
 # Memory is about 3·8·N² bytes, time some N³/2e10 s: half a gigabyte and a few seconds.
 MAX_UNKNOWNS = 4800
 # C_w of a circle is 0. Its error is relative to |C_w| or this share of I_p²/A, a section's warping by its size alone.
-WARPING_SCALE = 1e-6
+WARPING_SCALE = 1e-5
 # What rounding leaves in the numbers where nothing cancels; J is the difference of I_p and an integral of its size.
 ROUNDING = 1e-14
 # The difference of two resolutions is the error of the coarser; that of the finer has been seen to be as large as that where
-# it falls slowly, so twice the difference is given, and never less than a share of the largest: one may vanish by chance.
-SAFETY = 2.0
+# it falls slowly, so half as much again is given, and never less than a share of the largest: one may vanish by chance.
+SAFETY = 1.5
 CHANCE = 0.1
+# With a larger relative error there is no result to speak of.
+MEANINGLESS = 0.1
 
 
 class UnsolvableError(EdgetallyError):
@@ -59,7 +62,7 @@ class WarpingLine:
 class TorsionSolution:
     """Torsion, warping and shear of one region, in the input's coordinates and powers of its unit.
 
-    Errors are relative: of `warping_constant` to the larger of |C_w| and 1e-6·I_p²/A, of the shear centre to the larger side
+    Errors are relative: of `warping_constant` to the larger of |C_w| and 1e-5·I_p²/A, of the shear centre to the larger side
     of the outline's box. `shear_compliance` (2, 2) is F with A_s = 1/(dᵀF d) along the unit vector d, in the drawing's axes;
     axis 1 has the largest second moment and the angle `principal_angle` [rad] from +x. `flexural_centre` is where a force
     at the given Poisson's ratio gives no mean twist; at ν = 0 it is the shear centre (Trefftz's, independent of ν).
@@ -103,33 +106,32 @@ def solve(
     Raises UnsolvableError, with findings, for what has no solution within the limits: a loop the wrong way round, no area,
     too many unknowns, boundaries that touch or cross.
     """
-    frame = _framed(loops)
-    points = void_points(frame.boundary)
+    frame, smoothing = _framed(loops)
     history: list[_Numbers] = []
     errors: _Errors | None = None
     best: Resolution | None = None
     try:
-        for resolution in resolutions(frame, points, poisson, max_unknowns):
-            numbers = _numbers(frame, resolution)
-            if history:
-                errors = _compared(numbers, history[-1])
-            history.append(numbers)
-            best = resolution
-            if errors is not None and errors.worst <= tolerance:
-                break
+        # what divides by zero or overflows shows in the numbers, which are judged in the end
+        with np.errstate(all="ignore"):
+            points = void_points(frame.boundary)
+            for best in resolutions(frame, points, poisson, max_unknowns):
+                history.append(_numbers(frame, best, smoothing))
+                if len(history) > 1:
+                    errors = _compared(history[-1], history[-2], _axes(frame))
+                    if errors.worst <= tolerance:
+                        break
     except TooManyUnknownsError as refusal:
-        raise _refused(
-            f"torsion needs at least {refusal.needed} unknowns for this outline, more than the limit of {max_unknowns}", frame
-        ) from None
+        needed = f"torsion needs at least {refusal.needed} unknowns for this outline"
+        raise _refused(f"{needed}, more than the limit of {max_unknowns}", frame) from None
     except np.linalg.LinAlgError:
         raise _refused("the equation of torsion is singular: do boundaries touch or cross?", frame) from None
-    assert best is not None
-    if errors is None:
+    if best is None or errors is None:
         raise _refused(f"two resolutions for an estimate of error need more than {max_unknowns} unknowns", frame)
-    return _solution(frame, best, history[-1], errors, poisson, tolerance, len(history))
+    with np.errstate(all="ignore"):
+        return _solution(frame, best, history[-1], errors, poisson, tolerance, len(history))
 
 
-def _framed(loops: Sequence[Sequence[Curve]]) -> Frame:
+def _framed(loops: Sequence[Sequence[Curve]]) -> tuple[Frame, float]:
     ends = np.array([z for loop in loops for curve in loop for z in (curve.start, curve.point(0.5))], dtype=complex)
     if not ends.size or not np.isfinite(ends).all():
         raise UnsolvableError("the region has no boundary of finite points")
@@ -140,8 +142,9 @@ def _framed(loops: Sequence[Sequence[Curve]]) -> Frame:
     place = complex(ends[0])
     if not kept[0]:
         raise UnsolvableError("the region has no outer boundary of any length", [_finding("no outer boundary", place)])
+    smooth = [smoothed(loop) for loop in kept]
     try:
-        return Frame.around(kept)
+        return Frame.around([loop for loop, _ in smooth]), max(effect for _, effect in smooth)
     except ValueError as reason:
         raise UnsolvableError(str(reason), [_finding(str(reason), place)]) from None
 
@@ -166,21 +169,26 @@ class _Numbers:
     polar: float
     quartic: float
     size: float
+    smoothing: float
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, eq=False)
 class _Errors:
+    """Relative errors; those of the compliance (2, 2) in the frame, and of 1/F_xx and 1/F_yy in the drawing's axes."""
+
     torsion: float
     warping: float
     centre: float
     compliance: Floats
+    drawn: Floats
 
     @property
     def worst(self) -> float:
-        return max(self.torsion, self.warping, self.centre, float(self.compliance.max()))
+        own = float(np.diag(self.compliance).max())
+        return max(self.torsion, self.warping, self.centre, own, float(self.drawn.max()))
 
 
-def _numbers(frame: Frame, resolution: Resolution) -> _Numbers:
+def _numbers(frame: Frame, resolution: Resolution, smoothing: float) -> _Numbers:
     turned, m = resolution.torsion, frame.moments
     return _Numbers(
         turned.torsion_constant,
@@ -191,23 +199,35 @@ def _numbers(frame: Frame, resolution: Resolution) -> _Numbers:
         float(m[0, 2] + m[2, 0]),
         float(m[4, 0] + 2.0 * m[2, 2] + m[0, 4]),
         frame.boundary.size,
+        smoothing,
     )
 
 
-def _compared(fine: _Numbers, coarse: _Numbers) -> _Errors:
+def _axes(frame: Frame) -> Floats:
+    """Return the matrix that turns vectors of the frame into the drawing's axes."""
+    return np.array([[frame.turn.real, -frame.turn.imag], [frame.turn.imag, frame.turn.real]])
+
+
+def _compared(fine: _Numbers, coarse: _Numbers, axes: Floats) -> _Errors:
     """Return the relative errors of `fine`: its differences to `coarse`, and rounding."""
     scale = max(abs(fine.warping), WARPING_SCALE * fine.polar**2)
-    diagonal = np.sqrt(np.outer(np.diag(fine.compliance), np.diag(fine.compliance)))
+    diagonal = np.sqrt(np.abs(np.outer(np.diag(fine.compliance), np.diag(fine.compliance))))
     torsion = SAFETY * abs(fine.torsion - coarse.torsion) / abs(fine.torsion)
     warping = SAFETY * abs(fine.warping - coarse.warping) / scale
     centre = SAFETY * abs(fine.centre - coarse.centre) / fine.size
     compliance = SAFETY * np.abs(fine.compliance - coarse.compliance) / diagonal
-    least = CHANCE * max(torsion, warping, centre, float(compliance.max()))
+    own_warping = warping if abs(fine.warping) == scale else 0.0
+    least = CHANCE * max(torsion, own_warping, centre, float(compliance.max()))
+    extra = 10.0 * ROUNDING + fine.smoothing
+    compliance = np.maximum(compliance, least) + extra
+    turned = np.diag(axes @ fine.compliance @ axes.T)
+    drawn = np.diag(np.abs(axes) @ (compliance * diagonal) @ np.abs(axes).T) / np.abs(turned)
     return _Errors(
-        max(torsion, least) + ROUNDING * fine.polar / abs(fine.torsion),
-        max(warping, least) + ROUNDING * fine.quartic / scale,
-        max(centre, least) + 10.0 * ROUNDING,
-        np.maximum(compliance, least) + 10.0 * ROUNDING,
+        max(torsion, least) + ROUNDING * fine.polar / abs(fine.torsion) + fine.smoothing,
+        max(warping, least) + ROUNDING * fine.quartic / scale + fine.smoothing,
+        max(centre, least) + extra,
+        compliance,
+        drawn,
     )
 
 
@@ -224,21 +244,13 @@ def _solution(
         raise _refused("the solution for torsion has no positive stiffness: do boundaries touch or cross?", frame)
     if not (np.diag(numbers.compliance) > 0.0).all():
         raise _refused("the solution for shear has no positive stiffness: do boundaries touch or cross?", frame)
+    if not errors.worst < MEANINGLESS:
+        raise _refused(f"torsion and shear come out with an error of {errors.worst:.1g}: is a wall thinner than rounding?", frame)
     scale, turn = frame.scale, frame.turn
-    axes = np.array([[turn.real, -turn.imag], [turn.imag, turn.real]])
+    axes = _axes(frame)
     compliance = axes @ numbers.compliance @ axes.T / scale**2
-    spread = errors.compliance.max()
     own = [Number(scale**2 / float(numbers.compliance[k, k]), float(errors.compliance[k, k])) for k in range(2)]
-    # along other axes the error of F mixes: its norm serves for both
-    mixed = float(np.trace(numbers.compliance)) / scale**2
-    drawn = [
-        Number(1.0 / float(compliance[k, k]), float(spread) * max(1.0, 0.5 * mixed / float(compliance[k, k])))
-        for k in range(2)
-    ]
-    if abs(turn.imag) < 1e-12:
-        drawn = own
-    elif abs(turn.real) < 1e-12:
-        drawn = own[::-1]
+    drawn = [Number(1.0 / float(compliance[k, k]), float(errors.drawn[k])) for k in range(2)]
     nodes = best.nodes
     places = frame.outside(nodes.z)
     lines = tuple(
@@ -257,7 +269,7 @@ def _solution(
         findings = (Finding("limit-reached", "warning", text),)
     return TorsionSolution(
         torsion_constant=Number(numbers.torsion * scale**4, errors.torsion),
-        warping_constant=Number(numbers.warping * scale**6, errors.warping),
+        warping_constant=Number(max(numbers.warping, 0.0) * scale**6, errors.warping),
         shear_centre=centre,
         shear_centre_error=errors.centre,
         shear_area_x=drawn[0],
