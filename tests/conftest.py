@@ -1,6 +1,6 @@
 """Settings of the suite: property-based tests are the same on every run, unless asked to explore.
 
-    HYPOTHESIS_PROFILE=explore python -m pytest
+HYPOTHESIS_PROFILE=explore python -m pytest
 """
 
 from __future__ import annotations

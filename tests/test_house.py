@@ -19,7 +19,20 @@ ROOT = Path(__file__).parent.parent
 SOURCE = ROOT / "src" / "edgetally"
 
 # from the outside in; a module may import from its own room and from those after it
-ROOMS = ["cli", "audit", "output", "survey", "analysis", "section", "outline", "drawing", "curves", "findings", "units", "errors"]
+ROOMS = [
+    "cli",
+    "audit",
+    "output",
+    "survey",
+    "analysis",
+    "section",
+    "outline",
+    "drawing",
+    "curves",
+    "findings",
+    "units",
+    "errors",
+]
 DOORS = {"ezdxf": ["drawing"], "shapely": ["outline"], "click": ["cli"], "reportlab": ["output"]}
 NEVER = {("section", "drawing"), ("outline", "drawing")}
 

@@ -182,8 +182,8 @@ def _read_binary(data: bytes, name: str) -> TagStream:
     values: list[Any] = []
     positions: list[int] = []
     at, complete = len(BINARY), False
-    # every file begins with the tag (0, SECTION): one zero byte and a letter, or two zero bytes
-    wide = data[at : at + 2] == b"\x00\x00" or (data[at : at + 1] != b"\xff" and data[at + 1 : at + 2] in b"\x00\x03")
+    # a file begins with the tag (0, SECTION), or with a comment (999): with one byte 00 "S" or FF E7, with two 00 00 or E7 03
+    wide = data[at + 1 : at + 2] in (b"\x00", b"\x03")
     try:
         while True:
             place = at

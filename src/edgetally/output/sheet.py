@@ -287,7 +287,7 @@ class _Sheet:
         for finding in findings:
             strong = finding.severity != "note"
             text = f"{finding.code}: {finding.message}"
-            for k, line in enumerate(wrapped(text, SMALL, self._evidence_width() - 10.0)):
+            for k, line in enumerate(wrapped(text, SMALL, self._evidence_width() - 10.0, BOLD if strong else REGULAR)):
                 lines.append((MARKS[finding.severity] if k == 0 else "", line, strong))
         return lines
 
@@ -314,7 +314,7 @@ class _Sheet:
     def _finding_line(self, mark: str, line: str, strong: bool, x: float, y: float) -> None:
         font, colour = (BOLD, ACCENT) if strong else (REGULAR, INK)
         self.pen.text(x, y, mark, SMALL, font, colour)
-        self.pen.text(x + 9.0, y, line, SMALL, font if mark else REGULAR, INK)
+        self.pen.text(x + 9.0, y, line, SMALL, font, INK)
 
     # ------------------------------------------------------------------ strokes
     def _heading(self, text: str, x0: float, x1: float, y: float) -> float:

@@ -8,7 +8,6 @@ from collections import defaultdict
 from typing import TYPE_CHECKING
 
 from edgetally.findings import RANK, Finding
-from edgetally.outline.words import length_text, place
 from edgetally.output.numbers import value_text
 from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
 from edgetally.output.words import CAUTION, described, evidence, header_fields
@@ -16,6 +15,7 @@ from edgetally.output.words import CAUTION, described, evidence, header_fields
 if TYPE_CHECKING:
     from edgetally.analysis import Analysis, SectionResult
 
+LABEL = 28
 SHORT_KEYS = (
     "area", "centroid_x", "centroid_y", "second_moment_x", "second_moment_y", "product_of_inertia",
     "principal_moment_1", "principal_moment_2", "principal_angle", "mass_per_length",
@@ -27,9 +27,9 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
     lines = []
     for name, value in header_fields(analysis).items():
         if not (short and name in ("SHA-256", "DXF version")):
-            lines.append(f"{name:<22}{value}")
+            lines.append(f"{name:<{LABEL}}{value}")
     if not short:
-        lines += [f"{name:<22}{value}" for name, value in evidence(analysis)]
+        lines += [f"{name:<{LABEL}}{value}" for name, value in evidence(analysis)]
     for section in analysis.sections:
         lines.append("")
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:
@@ -84,15 +84,11 @@ def finding_lines(findings: tuple[Finding, ...], analysis: Analysis) -> list[str
             joins[finding.severity].append(finding)
         else:
             lines.append(f"  {finding.severity}: {finding.code}: {finding.message}")
-    effect = analysis.join_effect
     for severity, group in joins.items():
-        if len(group) == 1 or effect is None:
+        if len(group) == 1:
             lines += [f"  {severity}: {f.code}: {f.message}" for f in group]
         else:
-            widest = f"{length_text(effect.widest, analysis.drawing.unit)} at {place(effect.at)}"
-            lines.append(
-                f"  {severity}: gap-joined: {len(group)} gaps joined, the widest of all {widest}; --json lists each"
-            )
+            lines.append(f"  {severity}: gap-joined: {len(group)} gaps joined; --json lists each")
     return lines
 
 

@@ -75,9 +75,17 @@ def evidence(analysis: Analysis) -> list[tuple[str, str]]:
         out = analysis.out_unit
         lines.append((
             "largest effect of the joins",
-            f"area {_power(effect.area, 2, out)}, second moments {_power(effect.second_moment, 4, out)}",
+            f"area {_power(effect.area, 2, out)}{_share(analysis, effect.area)}, "
+            f"second moments {_power(effect.second_moment, 4, out)}",
         ))  # fmt: skip
     return lines
+
+
+def _share(analysis: Analysis, area: float) -> str:
+    """The effect on the area in percent, where there is one section to relate it to."""
+    if len(analysis.sections) != 1:
+        return ""
+    return f" ({100 * area / (analysis.sections[0].properties['area'].value or area):.1g} %)"
 
 
 def _count(n: int, one: str, many: str) -> str:

@@ -16,9 +16,10 @@ from edgetally.section.resolution import Resolution, resolve
 BEGINNINGS = ((6.0, 6), (5.0, 4), (3.0, 3))
 LOWEST = 4
 # Panels whose coarseness exceeds this are cut in the first round; each round asks for ten times less.
-CUT = 1e-4
-# At joints, where the solution is not smooth, the coefficients fall slowly, and this share of it is enough for a cut.
-JOINT = 0.3
+CUT = 6e-5
+# At joints, where the solution is not smooth and its coefficients fall slowly, this share of it is enough for a cut, and
+# √(J/I_p) if that is more: the smaller J is against I_p, of which it is what is left, the more digits of ω it needs.
+JOINT = 0.03
 # Panels with this share of it get more nodes.
 ENRICH = 0.1
 MORE_NODES = 2
@@ -55,18 +56,20 @@ def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> 
     while True:
         resolution = resolve(frame, panels, points, poisson)
         yield resolution
-        panels = _finer(resolution, cut, points)
+        ratio = resolution.torsion.torsion_constant / float(frame.moments[0, 2] + frame.moments[2, 0])
+        joint = float(np.sqrt(np.clip(ratio, JOINT**2, 1.0)))
+        panels = _finer(resolution, cut, joint * cut, points)
         if int(panels.order.sum()) > limit or cut < ROUNDING:
             return
         cut *= 0.1
 
 
-def _finer(resolution: Resolution, cut: float, points: Complexes) -> Panels:
+def _finer(resolution: Resolution, cut: float, joint_cut: float, points: Complexes) -> Panels:
     panels, coarseness = resolution.nodes.panels, resolution.coarseness
     enriched = np.minimum(panels.order + MORE_NODES, MOST_NODES)
     order = np.where(coarseness > ENRICH * cut, enriched, panels.order)
     starts, ends = panels.joint_ends
-    at_joint = (coarseness > JOINT * cut) & (starts | ends)
+    at_joint = (coarseness > joint_cut) & (starts | ends)
     mask: Mask = (coarseness > cut) | at_joint | _at_sharp_corner(panels)
     finer = balanced(panels.with_order(order).refined(mask), points)
     if finer.order.sum() < (1.0 + GROWTH) * panels.order.sum():
