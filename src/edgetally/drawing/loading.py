@@ -4,18 +4,21 @@ from __future__ import annotations
 
 import hashlib
 import struct
-from dataclasses import dataclass
+from collections import Counter
+from collections.abc import Iterator
+from dataclasses import dataclass, field
 from pathlib import Path
 
 from ezdxf.document import Drawing as Document
-from ezdxf.filemanagement import readfile
+from ezdxf.entities import DXFEntity
+from ezdxf.entities.subentity import LinkedEntities
 from ezdxf.lldxf.const import DXFError
 
 from edgetally.drawing.limits import MAX_BYTES
+from edgetally.drawing.repair import library_tags, lost, read_repaired
+from edgetally.drawing.tags import BINARY, damaged, read_tags
 from edgetally.errors import DrawingError
 from edgetally.findings import Finding
-
-BINARY = b"AutoCAD Binary DXF\r\n\x1a\x00"  # the sentinel that the DXF reference prescribes
 
 # what people send under the name .dxf, by the first bytes
 _OTHER_KINDS = {
@@ -53,17 +56,23 @@ _UNREADABLE = (
 
 @dataclass(frozen=True, eq=False)
 class Loaded:
-    """A document in memory, and what identifies the file it came from."""
+    """A document in memory, what identifies the file it came from, and the repairs that were needed to read it.
+
+    `version` is the one that the file's header names (`AC1009`), which the library may have raised; "" for none.
+    """
 
     document: Document
     name: str
     sha256: str
+    findings: tuple[Finding, ...] = field(default=())
+    version: str = ""
 
 
 def load(path: str | Path) -> Loaded:
-    """Read a DXF file, ASCII or binary.
+    """Read a DXF file, ASCII or binary, whole: with the repairs listed that this takes, or not at all.
 
-    Raises DrawingError where there is no such file, it is no DXF file, it is cut short, or its structure is broken.
+    Raises DrawingError where there is no such file, it is no DXF file, it is cut short, an entity is damaged, or the
+    library would leave out a part of it.
     """
     path = Path(path)
     try:
@@ -79,19 +88,24 @@ def load(path: str | Path) -> Loaded:
     except OSError as error:
         raise DrawingError(f"{path} cannot be read: {error.strerror or error}") from None
     _refuse_other_kinds(path, data)
-    _refuse_truncated(path, data)
+    stream = read_tags(data, str(path))
+    version = stream.version
+    structure = read_repaired(stream)
     try:
-        document = readfile(path)
+        document = Document.load(library_tags(structure))
     except _UNREADABLE as error:
-        message = f"{path} is damaged or no DXF file: {error}; open it in a CAD program and save it again as DXF"
-        raise DrawingError(message, [Finding("entity-unreadable", "error", message)]) from None
-    return Loaded(document, path.name, hashlib.sha256(data).hexdigest())
+        raise damaged(str(path), f"the library that reads DXF says: {error or type(error).__name__}") from None
+    left_out = lost(structure, _counts(document))
+    if left_out is not None:
+        raise DrawingError(left_out.message, [left_out])
+    findings = tuple(structure.findings)
+    return Loaded(document, path.name, hashlib.sha256(data).hexdigest(), findings, version)
 
 
 def _refuse_other_kinds(path: Path, data: bytes) -> None:
     if not data.strip():
         raise DrawingError(f"{path} is empty; export the drawing again")
-    if data.startswith(BINARY):
+    if data.startswith((BINARY, b"\xff\xfe", b"\xfe\xff")):
         return
     head = data[:64].lstrip(b"\xef\xbb\xbf \t\r\n")
     for magic, kind in _OTHER_KINDS.items():
@@ -101,20 +115,22 @@ def _refuse_other_kinds(path: Path, data: bytes) -> None:
         raise DrawingError(f"{path} is not a DXF drawing; export the section as DXF")
 
 
-def _refuse_truncated(path: Path, data: bytes) -> None:
-    """Refuse a file without its end mark: the library would load what is there without a word."""
-    complete = False
-    if data.startswith(BINARY):
-        complete = data.rstrip(b"\x00\r\n\x1a").endswith(b"EOF")
-    else:
-        place = data.rfind(b"EOF")
-        while place >= 0 and not complete:
-            before = data[max(0, place - 16) : place].split(b"\n")
-            complete = len(before) >= 2 and before[-1].strip() == b"" and before[-2].strip() == b"0"
-            place = data.rfind(b"EOF", 0, place)
-    if not complete:
-        message = (
-            f"{path} ends before it is complete: the end mark of a DXF file is missing, so parts of the drawing may be "
-            "missing too; export or copy it again"
-        )
-        raise DrawingError(message, [Finding("truncated-file", "error", message)])
+def _counts(document: Document) -> dict[str, Counter[str]]:
+    """Return the number of entities of each kind that the library holds in every block, by casefolded name.
+
+    Model space and the paper space in use, which a file keeps in its section ENTITIES, are together under "".
+    """
+    found: dict[str, Counter[str]] = {}
+    for record in document.block_records:
+        count = Counter(kind for entity in record.entity_space for kind in _kinds(entity))
+        found[record.dxf.name.casefold()] = count
+    spaces = (document.modelspace(), document.layouts.active_layout())
+    found[""] = sum((found[space.block_record.dxf.name.casefold()] for space in spaces), Counter())
+    return found
+
+
+def _kinds(entity: DXFEntity) -> Iterator[str]:
+    """Yield the kind of an entity, and of those that follow it in a file: vertices and attributes."""
+    yield entity.dxftype()
+    if isinstance(entity, LinkedEntities):
+        yield from (follower.dxftype() for follower in entity.all_sub_entities())

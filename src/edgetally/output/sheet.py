@@ -30,7 +30,7 @@ SMALLEST, SMALL, BODY = 5.2, 6.6, 7.8
 LEADING = 9.4
 HAIR, RULE = 0.35, 0.9
 LIGHT = (0.78, 0.79, 0.80)
-LOWEST_FIGURE = 190.0
+LOWEST_FIGURE = 300.0
 """A figure lower than this [pt] is no use; findings go to the next page instead."""
 MARKS = {"note": "–", "warning": "!", "error": "✕"}
 
@@ -117,11 +117,13 @@ class _Sheet:
         foot = self._foot(section)
         y = self._heading("Findings, continued", self.left, self.right, y - 10.0)
         room = int((y - foot - 8.0) / LEADING)
-        for mark_text, line, strong in rest[:room]:
-            self._finding_line(mark_text, line, strong, self.left, y)
-            y -= LEADING
+        for column in range(2):
+            x, at = self.left + column * (self._evidence_width() + 16.0), y
+            for mark_text, line, strong in rest[column * room : (column + 1) * room]:
+                self._finding_line(mark_text, line, strong, x, at)
+                at -= LEADING
         self.canvas.showPage()
-        return rest[room:]
+        return rest[2 * room :]
 
     # ------------------------------------------------------------------ head and foot
     def _head(self, section: SectionResult) -> float:
