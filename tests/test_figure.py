@@ -22,6 +22,7 @@ from edgetally.output.pens import DRAWING_AXIS, MATERIAL, PRINCIPAL_AXIS, Label,
 from edgetally.output.pens import Path as Stroke
 from edgetally.output.svg import figure_svg, picture_svg
 from edgetally.section.area import area_properties
+from edgetally.section.connected import ConnectedResult
 
 SAMPLES = Path(__file__).parent.parent / "sample_drawings"
 WIDTH, HEIGHT = 320.0, 300.0
@@ -31,7 +32,8 @@ Box = tuple[float, float, float, float]
 def result_of(curves: list[Line | Arc], unit: str = "mm") -> SectionResult:
     section = section_of(curves, unit)
     result = area_properties(section)
-    return SectionResult(section, section.regions, result, dict(result.properties), result.findings, unit)
+    connected = ConnectedResult({}, None, ())
+    return SectionResult(section, section.regions, result, connected, dict(result.properties), result.findings, unit)
 
 
 def bar(width: float, height: float, angle: float, notch: float = 0.0, at: complex = 0j) -> SectionResult:

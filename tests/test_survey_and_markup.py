@@ -141,7 +141,7 @@ def test_markup_marks_axes_joins_and_findings_on_layers_of_their_own(tmp_path: P
     by_layer: dict[str, list[Any]] = {}
     for entity in space:
         by_layer.setdefault(entity.dxf.layer, []).append(entity)
-    assert set(by_layer) == {"OUTLINE", "CENTROID", "PRINCIPAL AXES", "JOINS"}
+    assert set(by_layer) == {"OUTLINE", "CENTROID", "SHEAR CENTRE", "PRINCIPAL AXES", "JOINS"}
     analysis = analyse(SAMPLES / "purlin-zed.dxf", layer="OUTLINE")
     assert len([e for e in by_layer["JOINS"] if e.dxftype() == "CIRCLE"]) == len(analysis.outline.joins)
     axis = next(e for e in by_layer["PRINCIPAL AXES"] if e.dxftype() == "LWPOLYLINE")

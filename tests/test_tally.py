@@ -31,7 +31,7 @@ def test_table_is_aligned_and_has_units() -> None:
     assert (code, err) == (0, "")
     rows = [line for line in out.splitlines() if line.startswith("  ")][1:]
     assert len(rows) == len(KEYS)
-    points = {line.index(".", 40) for line in rows if "." in line[40:56]}
+    points = {line.rindex(".") for line in rows if "." in line[48:]}
     assert len(points) == 1
     assert "mm⁴" in out
     assert "second moment about x" in out
@@ -56,7 +56,8 @@ def test_document_has_the_fixed_keys() -> None:
     for key in KEYS:
         if key != "mass_per_length":
             assert set(section["properties"][key]) == {"value", "unit", "error"}
-            assert 0 <= section["properties"][key]["error"] < 1e-12
+            limit = 1e-6 if key.startswith(("torsion", "warping", "shear")) else 1e-12
+            assert 0 <= section["properties"][key]["error"] <= limit
     assert section["properties"]["second_moment_x"]["unit"] == "mm^4"
     assert document == analyse(BRACKET, layer="OUTLINE").to_dict()
 
@@ -144,7 +145,7 @@ def test_symbols_change_symbols_and_never_values() -> None:
 
 
 def test_every_key_has_name_symbol_and_unit() -> None:
-    assert len(KEYS) == len(set(KEYS)) == 30
+    assert len(KEYS) == len(set(KEYS)) == 36
     for key in KEYS:
         for symbols in ("plain", "en", "us"):
             assert "{" not in name_of(key, symbols) + symbol_of(key, symbols)

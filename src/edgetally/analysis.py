@@ -19,10 +19,11 @@ from edgetally.outline.choosing import choose
 from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
 from edgetally.outline.records import Join, Outline, Region
 from edgetally.outline.words import at, handles, length_text, place
+from edgetally.section.accuracy import WARPING_SCALE
 from edgetally.section.area import AreaResult, area_properties
+from edgetally.section.connected import ConnectedResult, connected_properties
 from edgetally.section.record import Property, Section, input_rounding
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
-
 
 SAME_AREA = 1e-3
 """A hatch fills what the outline encloses to this share: CAD programs store its arcs with fewer digits."""
@@ -49,6 +50,7 @@ class SectionResult:
     section: Section
     drawn: tuple[Region, ...]
     result: AreaResult
+    connected: ConnectedResult
     properties: dict[str, Property]
     findings: tuple[Finding, ...]
     out_unit: str
@@ -59,9 +61,13 @@ class SectionResult:
 
     def natural_scale(self, key: str) -> float:
         """Return what an error is relative to where a value may vanish: the size for coordinates, (I_x + I_y)/2 for
-        products of inertia, 0 for all others."""
-        if key in ("centroid_x", "centroid_y"):
-            return self.section.size * length_factor(self.section.unit, self.out_unit)
+        products of inertia, 1e-5·I_p²/A for the warping constant, 0 for all others."""
+        length = length_factor(self.section.unit, self.out_unit)
+        if key in ("centroid_x", "centroid_y", "shear_centre_x", "shear_centre_y"):
+            return self.section.size * length
+        if key == "warping_constant":
+            polar, area = self.properties["polar_moment"].value or 0.0, self.properties["area"].value or 1.0
+            return WARPING_SCALE * polar**2 / area
         if key.startswith("product_of_inertia"):
             ending = key.removeprefix("product_of_inertia")
             x, y = (self.properties[f"second_moment_{axis}{ending}"].value or 0.0 for axis in "xy")
@@ -98,6 +104,7 @@ class Analysis:
     findings: tuple[Finding, ...]
     out_unit: str
     density: float | None
+    poisson: float
 
     @property
     def all_findings(self) -> tuple[Finding, ...]:
@@ -149,6 +156,7 @@ def analyse(
     select: str | None = None,
     out_units: str | None = None,
     density: float | str | None = None,
+    poisson: float = 0.3,
     name: str | None = None,
 ) -> Analysis:
     """Read a drawing and measure the section, or sections, on a layer of it.
@@ -163,12 +171,15 @@ def analyse(
     select : `each`, `together`, or which one (a number or a point `X,Y`) where there are several outer boundaries.
     out_units : `mm`, `cm`, `m` or `in`, the unit of the results; the drawing's own without it.
     density : kg/m³, or `steel`, `aluminium`, `stainless`; adds the mass per length.
+    poisson : Poisson's ratio for the shear areas, from 0 to 0.5.
     name : the name that the result gives for the file, where `path` is a copy of it.
 
     Raises UsageError, DrawingError or OutlineError, each with the message that the command prints.
     """
     if not (math.isfinite(scale) and scale > 0):
         raise UsageError(f"the scale must be a positive number, not {scale:g}")
+    if not 0.0 <= poisson <= 0.5:
+        raise UsageError(f"Poisson's ratio must be from 0 to 0.5, not {poisson:g}")
     for unit_name in (units, out_units):
         if unit_name is not None and unit_name not in MM_PER:
             raise UsageError(f"unit {unit_name!r} is not known: use one of {', '.join(MM_PER)}")
@@ -200,20 +211,25 @@ def analyse(
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
     sections = tuple(
-        _measure(Section(section_name, regions, unit, input_rounding(regions) * scale), scale, out_unit, kg_per_m3)
+        _measure(
+            Section(section_name, regions, unit, input_rounding(regions) * scale), scale, out_unit, kg_per_m3, poisson
+        )
         for section_name, regions in chosen
     )
     record = DrawingRecord(
         name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
     )
-    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3)
+    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson)
 
 
-def _measure(drawn: Section, scale: float, out_unit: str, density: float | None) -> SectionResult:
+def _measure(drawn: Section, scale: float, out_unit: str, density: float | None, poisson: float) -> SectionResult:
     section = Section(drawn.name, tuple(r.scaled(scale) for r in drawn.regions), drawn.unit, drawn.input_rounding)
     result = area_properties(section, density=density)
-    properties = {key: p.converted(section.unit, out_unit) for key, p in result.properties.items()}
-    return SectionResult(section, drawn.regions, result, properties, result.findings, out_unit)
+    connected = connected_properties(section, poisson=poisson)
+    both = result.properties | connected.properties
+    properties = {key: p.converted(section.unit, out_unit) for key, p in both.items()}
+    findings = result.findings + connected.findings
+    return SectionResult(section, drawn.regions, result, connected, properties, findings, out_unit)
 
 
 def _density(density: float | str | None) -> float | None:

@@ -47,6 +47,7 @@ CODES: dict[str, str] = {
     "truncated-file": "the file ends before it is complete",
     "limit-reached": "a limit that protects the program was reached",
     "axes-arbitrary": "the principal moments are equal, so every axis is principal",
+    "torsion-unsolved": "torsion and shear could not be computed",
     "parts-disconnected": "the parts of the section do not touch",
 }
 

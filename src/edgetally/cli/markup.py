@@ -16,7 +16,7 @@ from edgetally.cli.options import EXIT_OF, analysed, reading_options
 def markup(drawing: str, output: str, **options: Any) -> int:
     """Write the outline of DRAWING as it was understood to a new DXF file, with true curves.
 
-    Layers: OUTLINE, VOIDS, CENTROID, PRINCIPAL AXES, JOINS, and FINDINGS with a mark and a text at each.
+    Layers: OUTLINE, VOIDS, CENTROID, SHEAR CENTRE, PRINCIPAL AXES, JOINS, and FINDINGS with a mark and a text at each.
     """
     from edgetally.output.files import check_target, write_whole
     from edgetally.output.markup import markup_bytes

@@ -57,6 +57,7 @@ _READING = [
         metavar="VALUE",
         help="kg/m³, or steel, aluminium, stainless: adds the mass per length.",
     ),
+    click.option("--poisson", type=float, default=0.3, show_default=True, help="Poisson's ratio, for the shear areas."),
 ]
 
 
@@ -87,6 +88,7 @@ def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
         "select": selection(each=options["each"], together=options["together"], pick=options["pick"]),
         "out_units": options["out_units"],
         "density": options["density"],
+        "poisson": options["poisson"],
     }
     with copied(drawing) as (path, name):
         return analyse(path, name=name, **settings)

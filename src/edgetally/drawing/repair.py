@@ -67,15 +67,12 @@ def library_tags(structure: Structure) -> Iterator[DXFTag]:
     stream = structure.stream
     plain = stream.version < R13  # R12 has no subclass markers, and the library is confused by them there
     if not structure.changed and not (plain and 100 in stream.codes):
-        yield from stream.tags()
+        yield from map(tag_of if stream.binary else DXFTag, stream.codes, stream.values)
     else:
         for name, records in structure.sections.items():
             yield from (DXFTag(0, "SECTION"), DXFTag(2, name))
             for record in records:
-                tags: Any = record.tags if record.tags is not None else None
-                for tag in stream.tags(record.start, record.stop) if tags is None else (tag_of(*t) for t in tags):
-                    if tag.code != 100 or not plain:
-                        yield tag
+                yield from (tag_of(*tag) for tag in _tags(structure, record) if tag[0] != 100 or not plain)
             yield DXFTag(0, "ENDSEC")
     yield DXFTag(0, "EOF")
 
@@ -186,35 +183,36 @@ def _check_table(structure: Structure, table: str, used: set[str], what: str, al
 def _check_handles(structure: Structure) -> None:
     """Give a new handle where one is used twice or is none; table entries and objects keep theirs."""
     stream = structure.stream
-    seen: dict[str, str] = {}
-    wanting: list[tuple[Record, str]] = []
+    seen: set[str] = set()
+    twice: list[Record] = []
+    none: list[Record] = []
     for section in ("TABLES", "OBJECTS", "BLOCKS", "ENTITIES"):
         for record in structure.sections.get(section, ()):
             handle = value_of(stream, record, 105 if record.kind == "DIMSTYLE" else 5)
             if handle is None:
                 continue
             key = str(handle).strip().upper().lstrip("0")
-            if not _HANDLE.fullmatch(str(handle)) or not key or (key in seen and section in ("BLOCKS", "ENTITIES")):
-                wanting.append((record, str(handle).strip()))
+            if not _HANDLE.fullmatch(str(handle)) or not key:
+                none.append(record)
+            elif key in seen and section in ("BLOCKS", "ENTITIES"):
+                twice.append(record)
             else:
-                seen[key] = record.kind
-    if not wanting:
-        return
+                seen.add(key)
     number = max((int(key, 16) for key in seen), default=0)
-    given: list[str] = []
-    old: list[str] = []
-    for record, handle in wanting:
-        number += 1
-        code = 105 if record.kind == "DIMSTYLE" else 5
-        tags = _tags(structure, record)
-        at = next(i for i, tag in enumerate(tags) if tag[0] == code)
-        record.tags = [*tags[:at], (code, f"{number:X}"), *tags[at + 1 :]]
-        given.append(f"{record.kind} #{number:X}")
-        old += [handle] if handle and handle not in old else []
-    structure.changed = True
-    named = f" ({', '.join(old[:5])}{' and more' if len(old) > 5 else ''})" if old else ""
-    text = f"{len(given)} handles are missing, used twice or no hexadecimal numbers{named}; new ones were given: "
-    structure.findings.append(repaired(text + ", ".join(given[:5]) + (" and more" if len(given) > 5 else "")))
+    for records, what in ((twice, "whose handle is used already"), (none, "whose handle is no hexadecimal number")):
+        given: list[str] = []
+        for record in records:
+            number += 1
+            code = 105 if record.kind == "DIMSTYLE" else 5
+            tags = _tags(structure, record)
+            at = next(i for i, tag in enumerate(tags) if tag[0] == code)
+            old = str(tags[at][1]).strip()[:20]
+            given.append(f"{record.kind}{f' #{old}' if old else ''} is now #{number:X}")
+            record.tags = [*tags[:at], (code, f"{number:X}"), *tags[at + 1 :]]
+        if given:
+            structure.changed = True
+            listed = ", ".join(given[:5]) + (f" and {len(given) - 5} more" if len(given) > 5 else "")
+            structure.findings.append(repaired(f"{len(given)} records {what} were given new ones: {listed}"))
 
 
 def _check_version(structure: Structure) -> None:

@@ -284,7 +284,8 @@ def _tables(structure: Structure) -> None:
             table = None
         elif record.kind in entries:
             moved += table != record.kind
-            if not str(value_of(stream, record, 2) or "").strip() and record.kind not in ("VPORT",):
+            entry = value_of(stream, record, 2)  # a STYLE that loads shapes has the name ""
+            if entry is None or (record.kind in ("LAYER", "LTYPE", "BLOCK_RECORD") and not str(entry).strip()):
                 odd[f"{record.kind} without a name"] += 1
                 continue
             entries[record.kind].append(record)

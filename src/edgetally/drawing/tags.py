@@ -8,7 +8,6 @@ from __future__ import annotations
 
 import re
 import struct
-from collections.abc import Iterator
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -61,11 +60,6 @@ class TagStream:
             return f"byte {self.positions[index] if self.positions else 0}"
         number = self.positions[index] if self.positions else index
         return f"line {self.first_line + 2 * number + 1}"
-
-    def tags(self, start: int = 0, stop: int | None = None) -> Iterator[DXFTag]:
-        """Yield the tags as the library takes them."""
-        for code, value in zip(self.codes[start:stop], self.values[start:stop], strict=True):
-            yield tag_of(code, value)
 
 
 def tag_of(code: int, value: Any) -> DXFTag:

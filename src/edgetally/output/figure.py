@@ -49,6 +49,8 @@ STRIP = 34.0
 """Room [pt] below for the scale bar and the key of the marks."""
 NO_ARC = 1.0
 """Below this angle [degrees] the arc from x to axis 1 would be smaller than its own arrowhead."""
+SAME_CENTRE = 1e-3
+"""A shear centre nearer to the centroid than this share of the section's size is not marked: it would cover it."""
 SAME_FIBRE = 2.0
 """Where the principal axes are turned by less than this [degrees], their extreme fibres are not marked twice."""
 
@@ -92,6 +94,10 @@ class _Figure:
         self.theta = section.result.axes.angle.value
         self.arbitrary = section.result.axes.arbitrary
         x0, y0, x1, y1 = section.section.packed.box
+        self.shear_centre = _shear_centre(section)
+        if self.shear_centre is not None:  # the scale leaves room for it
+            x0, x1 = min(x0, self.shear_centre.real), max(x1, self.shear_centre.real)
+            y0, y1 = min(y0, self.shear_centre.imag), max(y1, self.shear_centre.imag)
         self.mm = length_factor(section.section.unit, "mm")
         room_x, room_y = width - 2 * MARGIN, height - STRIP - 2 * MARGIN
         wanted = [room / (extent * self.mm * POINTS_PER_MM) for room, extent in ((room_x, x1 - x0), (room_y, y1 - y0))]
@@ -109,7 +115,8 @@ class _Figure:
             self._material(),
             *self._axes(),
             *self._extreme_fibres(),
-            *self._centroid(),
+            *centroid_mark(self.centre),
+            *(shear_centre_mark(self.paper(self.shear_centre)) if self.shear_centre is not None else ()),
             *self._scale_bar(),
             *self._key(),
         ]
@@ -195,9 +202,6 @@ class _Figure:
             base = tip + size * direction
             yield polygon([tip, base + 0.42j * size * direction, base - 0.42j * size * direction], style)
 
-    def _centroid(self) -> Iterable[Item]:
-        yield from centroid_mark(self.centre)
-
     # ------------------------------------------------------------------ strip
     def _scale_bar(self) -> Iterable[Item]:
         unit = self.section.out_unit
@@ -224,9 +228,13 @@ class _Figure:
         if not self.arbitrary:
             entries.append(("hollow", f"{letters.first}, {letters.second}"))
         entries.insert(0, ("centroid", "centroid"))
+        if self.shear_centre is not None:
+            entries.insert(1, ("shear", "shear centre"))
         for kind, text in entries:
             if kind == "centroid":
                 yield from centroid_mark(complex(x + 4.0, y + 1.5), 2.8)
+            elif kind == "shear":
+                yield from shear_centre_mark(complex(x + 4.0, y + 1.5), 2.8)
             else:
                 points = [complex(x + 4.0, y - 1.5), complex(x + 6.3, y + 4.0), complex(x + 1.7, y + 4.0)]
                 yield polygon(points, HOLLOW_MARK if kind == "hollow" else SOLID_MARK)
@@ -240,6 +248,23 @@ def centroid_mark(z: complex, radius: float = 3.2) -> Iterable[Item]:
     for quarter in (0.0, pi):
         arc = Arc.from_centre(z, radius, quarter, pi / 2)
         yield Path(((arc, Line(arc.end, z), Line(z, arc.start)),), SOLID_MARK, closed=True)
+
+
+def shear_centre_mark(z: complex, radius: float = 3.2) -> Iterable[Item]:
+    """The mark of the shear centre: a ring with a diagonal cross."""
+    yield disc(z, radius, OPEN_MARK)
+    for turn in (pi / 4, 3 * pi / 4):
+        arm = rect(1.5 * radius, turn)
+        yield stroke(z - arm, z + arm, THIN)
+
+
+def _shear_centre(section: SectionResult) -> complex | None:
+    """Return the shear centre where it is known and is not the centroid."""
+    solution = section.connected.solution
+    if solution is None:
+        return None
+    apart = abs(solution.shear_centre - section.result.centroid)
+    return solution.shear_centre if apart > SAME_CENTRE * section.section.size else None
 
 
 def _extreme_point(section: SectionResult, direction: complex) -> complex:

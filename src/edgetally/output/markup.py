@@ -71,8 +71,11 @@ def _axes(section: SectionResult, scale: float) -> list[Mark]:
         texts.append((centre + (reach + 0.3 * letter) * direction, name, letter))
     cross = _cross(centre, SIGN * size)
     circle: tuple[Curve, ...] = (Arc.from_centre(centre, 0.7 * SIGN * size, 0.0, 2 * pi),)
+    solution = section.connected.solution
+    shear = _cross(solution.shear_centre / scale, SIGN * size) if solution is not None else ()
     return [
         Mark("CENTROID", 5, runs=(*cross, circle)),
+        Mark("SHEAR CENTRE", 2, runs=shear),
         Mark("PRINCIPAL AXES", 6, runs=tuple(runs), texts=tuple(texts)),
     ]
 

@@ -18,6 +18,7 @@ from edgetally.output.paper import BOLD, REGULAR, PdfPen, fitted, printable, reg
 from edgetally.output.pens import ACCENT, INK, MUTED, Colour, draw
 from edgetally.output.symbols import AXES, KEYS, SymbolSet, symbol_of
 from edgetally.output.words import CAUTION, conventions, described, evidence, header_fields, in_print
+from edgetally.section.connected import KEYS as CONNECTED
 from edgetally.section.record import Property
 
 if TYPE_CHECKING:
@@ -30,7 +31,7 @@ SMALLEST, SMALL, BODY = 5.2, 6.6, 7.8
 LEADING = 9.4
 HAIR, RULE = 0.35, 0.9
 LIGHT = (0.78, 0.79, 0.80)
-LOWEST_FIGURE = 300.0
+LOWEST_FIGURE = 262.0
 """A figure lower than this [pt] is no use; findings go to the next page instead."""
 MARKS = {"note": "–", "warning": "!", "error": "✕"}
 
@@ -249,14 +250,12 @@ class _Sheet:
         half = (len(rows) + 1) // 2
         gutter = 16.0
         width = 0.5 * (self.right - self.left - gutter)
-        y0 = self._heading(
-            f"Properties (relative error of each below {self._largest_error(rows)})", self.left, self.right, top
-        )
+        y0 = self._heading(self._table_title(rows), self.left, self.right, top)
         for column in range(2):
             x, y = self.left + column * (width + gutter), y0
             for prop in rows[column * half : (column + 1) * half]:
                 self.pen.symbol(x, y, symbol_of(prop.key, self.symbols), BODY)
-                self.pen.text(x + 42.0, y, described(prop.key, self.symbols, self.analysis.density), BODY)
+                self.pen.text(x + 42.0, y, described(prop.key, self.symbols, self.analysis), BODY)
                 value = self._value(section, prop)
                 self.pen.text(x + width - 25.0 - text_width(value, BODY, BOLD), y, value, BODY, BOLD)
                 self.pen.text(x + width - 22.0, y, prop.unit.pretty, BODY)
@@ -267,9 +266,11 @@ class _Sheet:
     def _value(self, section: SectionResult, prop: Property) -> str:
         return in_print(value_text(prop, section.natural_scale(prop.key)))
 
-    def _largest_error(self, rows: list[Property]) -> str:
-        largest = max(prop.error or 0.0 for prop in rows)
-        return _power_above(largest)
+    def _table_title(self, rows: list[Property]) -> str:
+        """The heading of the table, with what no relative error of the rows exceeds."""
+        groups = [[p.error or 0.0 for p in rows if (p.key in CONNECTED) == solved] for solved in (False, True)]
+        exact, solved = (_power_above(max(errors, default=0.0)) for errors in groups)
+        return f"Properties (relative error below {exact}; of torsion, warping and shear below {solved})"
 
     def _evidence_lines(self, section: SectionResult) -> list[tuple[str, str]]:
         return [

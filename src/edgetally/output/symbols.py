@@ -59,9 +59,16 @@ _TABLE: dict[str, tuple[str, str]] = {
     "elastic_modulus_1_negative": ("elastic modulus {1}, −{2} side", "{W}{1},−"),
     "elastic_modulus_2_positive": ("elastic modulus {2}, +{1} side", "{W}{2},+"),
     "elastic_modulus_2_negative": ("elastic modulus {2}, −{1} side", "{W}{2},−"),
+    "torsion_constant": ("torsion constant", "{J}"),
+    "warping_constant": ("warping constant", "{Cw}"),
+    "shear_centre_x": ("shear centre, {x}", "{x}_s"),
+    "shear_centre_y": ("shear centre, {y}", "{y}_s"),
+    "shear_area_x": ("shear area along {x}", "A_s{x}"),
+    "shear_area_y": ("shear area along {y}", "A_s{y}"),
     "mass_per_length": ("mass per length", "m"),
 }
 
+_TORSION: dict[SymbolSet, tuple[str, str]] = {"plain": ("J", "C_w"), "en": ("I_t", "I_w"), "us": ("J", "C_w")}
 _MODULUS: dict[SymbolSet, str] = {"plain": "W_el,", "en": "W_el,", "us": "S_"}
 _RADIUS: dict[SymbolSet, str] = {"plain": "i", "en": "i", "us": "r"}
 
@@ -72,7 +79,7 @@ KEYS = tuple(_TABLE)
 def _filled(text: str, symbols: SymbolSet) -> str:
     letters = AXES[symbols]
     known = {"x": letters.x, "y": letters.y, "1": letters.first, "2": letters.second}
-    known |= {"W": _MODULUS[symbols], "i": _RADIUS[symbols]}
+    known |= {"W": _MODULUS[symbols], "i": _RADIUS[symbols], "J": _TORSION[symbols][0], "Cw": _TORSION[symbols][1]}
     for key, value in known.items():
         text = text.replace("{" + key + "}", value)
     return text

@@ -18,7 +18,7 @@ if TYPE_CHECKING:
 LABEL = 28
 SHORT_KEYS = (
     "area", "centroid_x", "centroid_y", "second_moment_x", "second_moment_y", "product_of_inertia",
-    "principal_moment_1", "principal_moment_2", "principal_angle", "mass_per_length",
+    "principal_moment_1", "principal_moment_2", "principal_angle", "torsion_constant", "mass_per_length",
 )  # fmt: skip
 
 
@@ -34,7 +34,7 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
         lines.append("")
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:
             lines.append(f"section {section.name}")
-        lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS, analysis.density)
+        lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS, analysis)
     findings = finding_lines(analysis.all_findings, analysis)
     if findings:
         lines += ["", "findings", *findings]
@@ -43,9 +43,7 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
     return "\n".join(lines)
 
 
-def property_lines(
-    section: SectionResult, symbols: SymbolSet, keys: tuple[str, ...], density: float | None = None
-) -> list[str]:
+def property_lines(section: SectionResult, symbols: SymbolSet, keys: tuple[str, ...], analysis: Analysis) -> list[str]:
     """Return aligned lines: symbol, name, value with its decimal points under each other, unit, relative error."""
     rows = []
     for key in keys:
@@ -53,7 +51,7 @@ def property_lines(
         if prop is not None:
             value = value_text(prop, section.natural_scale(key))
             rows.append(
-                (symbol_of(key, symbols), described(key, symbols, density), value, prop.unit.pretty, prop.error)
+                (symbol_of(key, symbols), described(key, symbols, analysis), value, prop.unit.pretty, prop.error)
             )
     symbol_width = max(len(row[0]) for row in rows)
     name_width = max(len(row[1]) for row in rows)

@@ -40,10 +40,12 @@ def in_print(text: str) -> str:
     return f"{mantissa} × 10{str(power).translate(_SUPERSCRIPT)}" if power else mantissa
 
 
-def described(key: str, symbols: SymbolSet, density: float | None) -> str:
-    """Return the name of a property; of the mass, with the density it was taken at."""
+def described(key: str, symbols: SymbolSet, analysis: Analysis) -> str:
+    """Return the name of a property, with the density or Poisson's ratio that it was taken at."""
     name = name_of(key, symbols)
-    return f"{name} at {density:g} kg/m³" if key == "mass_per_length" else name
+    if key == "mass_per_length":
+        return f"{name} at {analysis.density:g} kg/m³"
+    return f"{name}, ν = {analysis.poisson:g}" if key.startswith("shear_area") else name
 
 
 def evidence(analysis: Analysis) -> list[tuple[str, str]]:

@@ -98,7 +98,7 @@ class Boundary:
 
     @cached_property
     def turn(self) -> Floats:
-        """The angle [rad] by which the outline turns left at each curve's end, −π to π; the interior angle is π less it."""
+        """The angle [rad] by which the outline turns left at each curve's end; the interior angle is π less it."""
         leaving, arriving = self.end_directions
         turned: Floats = np.angle(leaving[self.following] * arriving.conj())
         return turned

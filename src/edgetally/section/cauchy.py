@@ -5,14 +5,14 @@ For f analytic in the region and z on its boundary
     ∮ (f(ζ) − f(z))/(ζ − z) dζ = 0.
 
 At the nodes this is Σ_j A_ij (f_j − f_i) + f′_i w_i = 0 with A_ij = dζ_j/(ζ_j − z_i), f′ the derivative by the panel's
-parameter u and w its weight. With f = φ + iv, K = Im A and H = Re A the imaginary part is an equation of the second kind
-for φ, given its conjugate v:
+parameter u and w its weight. With f = φ + iv, K = Im A and H = Re A the imaginary part is an equation of the second
+kind for φ, given its conjugate v:
 
     Σ_j K_ij (φ_j − φ_i) = −Σ_j H_ij (v_j − v_i) − v′_i w_i.
 
-A constant added to v on one loop drops out, because Re ∮dζ/(ζ − z) = 0 there. The constant of φ is fixed by giving it the
-mean 0 along the boundary. Sources: N. I. Muskhelishvili, Singular Integral Equations (1953); weights near a panel after
-J. Helsing and R. Ojala, J. Comput. Phys. 227 (2008), in the closed form of `legendre.near_factors`.
+A constant added to v on one loop drops out, because Re ∮dζ/(ζ − z) = 0 there. The constant of φ is fixed by giving it
+the mean 0 along the boundary. Sources: N. I. Muskhelishvili, Singular Integral Equations (1953); weights near a panel
+after J. Helsing and R. Ojala, J. Comput. Phys. 227 (2008), in the closed form of `legendre.near_factors`.
 """
 
 from __future__ import annotations
@@ -85,7 +85,7 @@ def equation(nodes: Nodes, conjugates: Floats, rates: Floats) -> Equation:
     right = np.empty((count, conjugates.shape[1]))
     mean = np.pi * nodes.ds / nodes.ds.sum()
     rows = max(8, BLOCK // count)
-    across, up, square, flow, spin = (np.empty((rows, count)) for _ in range(5))
+    across, up, square, flow = (np.empty((rows, count)) for _ in range(4))
     for low in range(0, count, rows):
         high = min(count, low + rows)
         m = high - low

@@ -1,9 +1,9 @@
 """Runs of many short chords, taken as the smooth curve that encloses the same area.
 
-A finely chopped arc has thousands of corners, each of which turns by little. In the solution the chords act like a smooth
-boundary in their mean position: one that cuts off as much as it adds, inside the vertices by κh²/12. What is left is of the
-third order in the turn θ of a vertex: J of a regular polygon is 1 − 0.033·θ³ of that of the circle of its area (0.036 for
-the hexagon, where θ = π/3). Runs that turn too sharply for that are left as they are.
+A finely chopped arc has thousands of corners, each of which turns by little. In the solution the chords act like a
+smooth boundary in their mean position: one that cuts off as much as it adds, inside the vertices by κh²/12. What is
+left is of the third order in the turn θ of a vertex: J of a regular polygon is 1 − 0.033·θ³ of that of the circle of
+its area (0.036 for the hexagon, where θ = π/3). Runs that turn too sharply for that are left as they are.
 """
 
 from __future__ import annotations
@@ -24,7 +24,8 @@ EFFECT = 0.1
 # A run is worth it from this many chords; neighbours in it differ in length by less than this factor.
 FEWEST = 12
 UNLIKE = 3.0
-# Polynomials of this degree are fitted, and split where they miss a point by more than this share of the rise of a chord.
+# Polynomials of this degree are fitted, and split where they miss a point by more than this share of the rise of a
+# chord.
 DEGREE = 9
 MISS = 0.02
 
@@ -113,7 +114,7 @@ def _polynomial(t: Floats, z: Complexes, miss: float) -> Bezier | None:
     degree = min(DEGREE, len(t) // 2)
     # u(1 − u) times a Bernstein sum of two degrees less keeps the ends
     inner = degree - 2
-    basis = np.array([comb(inner, k) * u**k * (1.0 - u) ** (inner - k) for k in range(inner + 1)]).T * (u * (1.0 - u))[:, None]
+    basis = np.array([comb(inner, k) * u ** (k + 1) * (1.0 - u) ** (inner - k + 1) for k in range(inner + 1)]).T
     parts, *_ = np.linalg.lstsq(basis[1:-1], (z - chord)[1:-1], rcond=None)
     if np.abs(chord + basis @ parts - z).max() > miss:
         return None

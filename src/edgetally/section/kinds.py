@@ -33,6 +33,12 @@ POWERS: dict[str, int] = {
     "elastic_modulus_1_negative": 3,
     "elastic_modulus_2_positive": 3,
     "elastic_modulus_2_negative": 3,
+    "torsion_constant": 4,
+    "warping_constant": 6,
+    "shear_centre_x": 1,
+    "shear_centre_y": 1,
+    "shear_area_x": 2,
+    "shear_area_y": 2,
 }
 
 OWN_UNITS: dict[str, Unit] = {"principal_angle": Unit("deg"), "mass_per_length": Unit("kg/m")}

@@ -1,4 +1,4 @@
-"""Legendre polynomials on −1 ≤ t ≤ 1: Gauss rules, what is done to values at their nodes, and functions of the second kind.
+"""Legendre polynomials on −1 ≤ t ≤ 1: Gauss rules, calculus on values at their nodes, functions of the second kind.
 
 A function on a panel is known by its values at the n Gauss–Legendre nodes, and meant is the polynomial of degree n − 1
 through them. Source of the formulas: NIST Digital Library of Mathematical Functions, chapters 3.5, 14 and 18.
@@ -12,7 +12,7 @@ import numpy as np
 
 from edgetally.curves.curve import Complexes, Floats
 
-# The forward recurrence of Qₙ multiplies rounding by about ρⁿ, the series needs log(1e-15)/(2 log ρ) terms: they meet here.
+# The forward recurrence of Qₙ multiplies rounding by about ρⁿ, the series needs 17/log₁₀ρ terms: they meet here.
 SERIES_FROM = 1.5
 SERIES_TERMS = ((1.5, 40), (2.2, 20), (4.0, 12))
 
@@ -55,7 +55,7 @@ def differentiation(n: int) -> Floats:
 
 @cache
 def integration(n: int) -> Floats:
-    """Return the matrix (n, n) from values at the nodes to ∫ from −1 to each node: ∫P_k = (P_{k+1} − P_{k−1})/(2k + 1)."""
+    """Return the matrix (n, n) from values at the nodes to the integrals from −1 to each node."""
     antiderivative = np.polynomial.legendre.legint(np.eye(n), lbnd=-1)
     values: Floats = np.polynomial.legendre.legvander(rule(n)[0], n) @ antiderivative @ to_coefficients(n)
     return values
@@ -86,16 +86,18 @@ def outward(t: Complexes) -> Complexes:
 def second_kind(n: int, t: Complexes, xi: Complexes) -> Complexes:
     """Return Qₙ(t) for complex t off the cut [−1, 1], to about 1e-14 absolute; ξ = outward(t).
 
-    Near the cut by (k + 1)Q_{k+1} = (2k + 1)tQ_k − kQ_{k−1} from Q₀ = ½ log((t + 1)/(t − 1)) and Q₁ = tQ₀ − 1; further out by
-    Qₙ = √π Γ(n + 1)/Γ(n + 3/2) ξ^{−n−1} ₂F₁(½, n + 1; n + 3/2; ξ^{−2}).
+    Near the cut by (k + 1)Q_{k+1} = (2k + 1)tQ_k − kQ_{k−1} from Q₀ = ½ log((t + 1)/(t − 1)) and Q₁ = tQ₀ − 1, and
+    further out by
+
+        Qₙ = √π Γ(n + 1)/Γ(n + 3/2) ξ^{−n−1} ₂F₁(½, n + 1; n + 3/2; ξ^{−2}).
     """
     out = np.empty_like(t)
     radius = np.abs(xi)
     near = radius < SERIES_FROM
     if near.any():
         s = t[near]
-        before = 0.5 * np.log((s + 1.0) / (s - 1.0))
-        here = s * before - 1.0
+        before = np.asarray(0.5 * np.log((s + 1.0) / (s - 1.0)), dtype=np.complex128)
+        here = np.asarray(s * before - 1.0, dtype=np.complex128)
         for k in range(1, n):
             before, here = here, ((2 * k + 1) * s * here - k * before) / (k + 1)
         out[near] = here
@@ -108,10 +110,11 @@ def second_kind(n: int, t: Complexes, xi: Complexes) -> Complexes:
 
 
 def _series(n: int, xi: Complexes, terms: int) -> Complexes:
-    x = xi**-2
-    total = np.ones_like(x)
+    x = 1.0 / (xi * xi)
+    total = np.ones(len(x), dtype=complex)
     for k in range(terms, 0, -1):
-        total = 1.0 + total * x * ((k - 0.5) * (n + k) / (k * (n + k + 0.5)))
+        total *= x * ((k - 0.5) * (n + k) / (k * (n + k + 0.5)))
+        total += 1.0
     lead = 2.0
     for k in range(1, n + 1):
         lead *= k / (k + 0.5)

@@ -28,8 +28,8 @@ class Group(NamedTuple):
 class Nodes:
     """N nodes in order along the loops.
 
-    `z` (N,) their places; `slope` dz/du, where u runs from −1 to 1 on each panel; `weight` the Gauss weights in u, so that
-    ∫f dz = Σ f·dz with `dz` = weight·slope; `loop` (N,) and `panel` (N,) to which loop and panel each belongs.
+    `z` (N,) their places; `slope` dz/du, where u runs from −1 to 1 on each panel; `weight` the Gauss weights in u, so
+    that ∫f dz = Σ f·dz with `dz` = weight·slope; `loop` (N,) and `panel` (N,) to which loop and panel each belongs.
     """
 
     panels: Panels

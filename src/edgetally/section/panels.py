@@ -18,7 +18,7 @@ from edgetally.section.boundary import Boundary, Ints, Mask
 
 # Towards a corner each panel is this many times shorter than the one before.
 RATIO = 4.0
-# A panel may be this many times longer than twice its distance to another and that one's length together.
+# A panel may be SLACK times the length of another, slightly more than RATIO, and AWAY times its distance to it longer.
 SLACK = 4.5
 AWAY = 3.0
 # On 90° of a circle few nodes do, and the preimage of a point nearby is unique.
@@ -76,14 +76,14 @@ class Panels:
         return self._cut(mask, 0.5 * (self.low + self.high))
 
     def refined(self, mask: Mask) -> Panels:
-        """Return the panels with the marked ones cut in two: those at a joint near it, by RATIO, the others in the middle."""
+        """Return the panels with the marked ones cut in two: those at a joint by RATIO, the others in the middle."""
         starts, ends = self.joint_ends
         share = np.where(starts & ~ends, 1.0 / RATIO, np.where(ends & ~starts, 1.0 - 1.0 / RATIO, 0.5))
         return self._cut(mask & (self.length > 4 * SHORTEST), self.low + share * (self.high - self.low))
 
     def _cut(self, mask: Mask, at: Floats) -> Panels:
         times = np.where(mask, 2, 1)
-        curve, low, high = (np.repeat(a, times) for a in (self.curve, self.low, self.high))
+        curve, low, high = np.repeat(self.curve, times), np.repeat(self.low, times), np.repeat(self.high, times)
         first = (np.cumsum(times) - times)[mask]
         high[first], low[first + 1] = at[mask], at[mask]
         return Panels(self.boundary, curve, low, high, np.repeat(self.order, times))
@@ -103,13 +103,16 @@ class Panels:
 
 
 def whole(boundary: Boundary, order: int = 16) -> Panels:
-    """Return panels fine enough for the curves themselves: lines whole, arcs to 90°, others until they are polynomials."""
+    """Return panels fine enough for the curves alone: lines whole, arcs to 90°, others until they are polynomials."""
     count = len(boundary)
-    curve = np.arange(count)
+    curve: Ints = np.arange(count)
     pieces = np.maximum(1, np.ceil(np.abs(boundary.sweep) / TURN * (1 - 1e-12)).astype(int))
     number = np.arange(pieces.sum()) - np.repeat(np.cumsum(pieces) - pieces, pieces)
-    curve, share = np.repeat(curve, pieces), 1.0 / np.repeat(pieces, pieces)
-    panels = Panels(boundary, curve, number * share, (number + 1) * share, np.full(len(curve), order))
+    share = 1.0 / np.repeat(pieces, pieces)
+    low: Floats = (number * share).astype(float)
+    high: Floats = ((number + 1) * share).astype(float)
+    repeated: Ints = np.repeat(curve, pieces)
+    panels = Panels(boundary, repeated, low, high, np.full(len(low), order))
     return _resolved(panels)
 
 
@@ -139,8 +142,8 @@ def _resolved(panels: Panels) -> Panels:
 def innermost(boundary: Boundary, depth: float) -> Floats:
     """Return for each joint the length of the panels next to it, inf where nothing asks for short ones.
 
-    With ω ~ |turn|·r^{π/a} an error of 10^{−depth} is met at r = (10^{−depth}/|turn|)^{a/2π}, as a share of half the shorter
-    neighbour. `depth` is in decades.
+    With ω ~ |turn|·r^{π/a} an error of 10^{−depth} is met at r = (10^{−depth}/|turn|)^{a/2π}, as a share of half the
+    shorter neighbour. `depth` is in decades.
     """
     angle = np.pi - boundary.turn
     shorter = np.minimum(boundary.length, boundary.length[boundary.following])
@@ -152,7 +155,7 @@ def innermost(boundary: Boundary, depth: float) -> Floats:
 
 
 def graded(boundary: Boundary, depth: float, order: int, lowest: int) -> Panels:
-    """Return panels that shrink towards the corners (`innermost`), with one node less for every two panels nearer to one.
+    """Return panels that shrink towards the corners (`innermost`), with a node less for every two panels nearer to one.
 
     Between `lowest` and `order` nodes. Arcs are cut to 90°, general curves until they are polynomials.
     """
@@ -197,8 +200,8 @@ def _ladder(first: float) -> list[float]:
 def balanced(panels: Panels, points: Complexes) -> Panels:
     """Halve panels that are long for what is near them, until none is.
 
-    That is longer than SLACK·(2·distance + length of the other) for another panel, or than the distance to one of `points`
-    (sources inside the voids).
+    That is longer than AWAY·distance + SLACK·(length of the other) for another panel, or than the distance to one of
+    `points` (sources inside the voids).
     """
     fresh: Mask = np.ones(len(panels), dtype=bool)
     for _ in range(ROUNDS):
@@ -240,4 +243,5 @@ def _distance(a: Complexes, b: Complexes, q: Complexes) -> Floats:
         share = np.clip((d.real * chord.real + d.imag * chord.imag) / square, 0.0, 1.0)
         d = d - share * chord
         np.minimum(best, d.real**2 + d.imag**2, out=best)
-    return np.sqrt(best)
+    apart: Floats = np.sqrt(best)
+    return apart

@@ -15,7 +15,7 @@ from edgetally.section.panels import SAMPLES, Panels
 # Targets times panels compared at a time.
 BLOCK = 400_000
 NEWTON = 12
-# Legendre coefficients of a general curve below this share of the largest are rounding, and would be blown up off [−1, 1].
+# Legendre coefficients of a general curve below this share of |z| are rounding, and would be blown up off [−1, 1].
 ROUNDING = 4e-15
 
 
@@ -46,7 +46,7 @@ class Preimages:
         self._reach = 0.5 * panels.length
 
     def candidates(self, targets: Complexes, panels: Ints, reach: float) -> Iterator[tuple[Ints, Ints]]:
-        """Yield, in order of the targets, all pairs (target, index into `panels`) not clearly further than `reach` half lengths.
+        """Yield, in order of the targets, all pairs (target, index into `panels`) within about `reach` half lengths.
 
         Bent panels are given half as much again, because their parameter lines spread.
         """
@@ -76,15 +76,14 @@ class Preimages:
 
     def _newton(self, away: Complexes, panels: Ints) -> Complexes:
         series = self._series[panels].T
-        slope = np.polynomial.legendre.legder(series)
-        t = away / self._half[panels]
+        slope = np.polynomial.legendre.legder(series).astype(complex)
+        t: Complexes = away / self._half[panels]
         for _ in range(NEWTON):
-            t = np.where(np.abs(t) > 8.0, 8.0 * t / np.abs(t), t)
+            t /= np.maximum(0.125 * np.abs(t), 1.0)
             value, rate = _values(series, t), _values(slope, t)
             step = (value - away) / np.where(rate == 0, 1.0, rate)
             size = np.abs(step)
-            step = np.where(size > 1.0, step / np.maximum(size, 1.0), step)
-            t = t - step
+            t -= step / np.maximum(size, 1.0)
             if size.max() < 1e-14:
                 break
         return t
@@ -98,5 +97,3 @@ def _values(series: Complexes, t: Complexes) -> Complexes:
         one, two = series[k] + (2 * k + 1) / (k + 1) * t * one - (k + 1) / (k + 2) * two, one
     total: Complexes = series[0] + t * one - 0.5 * two
     return total
-
-

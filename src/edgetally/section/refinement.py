@@ -12,13 +12,15 @@ from edgetally.section.frame import Frame
 from edgetally.section.panels import Panels, balanced, graded
 from edgetally.section.resolution import Resolution, resolve
 
-# Where to begin: decades of grading at corners and nodes on a panel. The coarser pairs are for outlines of very many curves.
+# Where to begin: decades of grading at corners and nodes on a panel. The coarser pairs are for outlines of very many
+# curves.
 BEGINNINGS = ((6.0, 6), (5.0, 4), (3.0, 3))
 LOWEST = 4
 # Panels whose coarseness exceeds this are cut in the first round; each round asks for ten times less.
 CUT = 6e-5
-# At joints, where the solution is not smooth and its coefficients fall slowly, this share of it is enough for a cut, and
-# √(J/I_p) if that is more: the smaller J is against I_p, of which it is what is left, the more digits of ω it needs.
+# At joints, where the solution is not smooth and its coefficients fall slowly, this share of it is enough for a cut,
+# and √(J/I_p) if that is more: the smaller J is against I_p, of which it is what is left, the more digits of ω it
+# needs.
 JOINT = 0.03
 # Panels with this share of it get more nodes.
 ENRICH = 0.1
@@ -82,4 +84,5 @@ def _at_sharp_corner(panels: Panels) -> Mask:
     sharp = boundary.turn < -SHARP
     starts = np.empty_like(sharp)
     starts[boundary.following] = sharp
-    return ((panels.low == 0.0) & starts[panels.curve]) | ((panels.high == 1.0) & sharp[panels.curve])
+    marked: Mask = ((panels.low == 0.0) & starts[panels.curve]) | ((panels.high == 1.0) & sharp[panels.curve])
+    return marked

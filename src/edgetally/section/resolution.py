@@ -21,8 +21,8 @@ from edgetally.section.torsion import Torsion
 class Resolution:
     """Torsion and shear of the region in its frame, on one set of panels.
 
-    `shear` is at the Poisson's ratio asked for, `plain` at ν = 0; `coarseness` (P,) says how much of the solution the last
-    Legendre coefficients of each panel still hold.
+    `shear` is at the Poisson's ratio asked for, `plain` at ν = 0; `coarseness` (P,) says how much of the solution the
+    last Legendre coefficients of each panel still hold.
     """
 
     nodes: Nodes
@@ -33,12 +33,12 @@ class Resolution:
 
 
 def resolve(frame: Frame, panels: Panels, points: Complexes, poisson: float) -> Resolution:
-    """Solve on the given panels; `points` (V,) lie inside the voids. Raises numpy's LinAlgError on a singular matrix."""
+    """Solve on the given panels; `points` (V,) lie in the voids. Raises numpy's LinAlgError on a singular matrix."""
     nodes = Nodes.on(panels)
     parts = flexural.flexure(nodes, points)
     v, rate = torsional.conjugate(nodes)
     system = equation(nodes, np.column_stack([v, parts.single]), np.column_stack([rate, parts.single_rate]))
-    solution = np.linalg.solve(system.matrix, system.right)
+    solution = np.linalg.solve(system.matrix, system.right).astype(float, copy=False)
     del system
     harmonic = solution[:, 1:] + parts.sources
     turned = torsional.torsion(nodes, solution[:, 0], frame.moments, points)
@@ -49,7 +49,7 @@ def resolve(frame: Frame, panels: Panels, points: Complexes, poisson: float) -> 
 
 
 def _coarseness(nodes: Nodes, fields: Floats) -> Floats:
-    """Return the tail of each field (N, R) on each panel relative to the field's range, times √(half length), the largest."""
+    """Return for each panel the largest tail of a field (N, R), relative to the field's range, times √(half length)."""
     result = np.zeros(len(nodes.panels))
     root = np.sqrt(0.5 * nodes.panels.length)
     for field in fields.T:

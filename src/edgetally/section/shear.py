@@ -1,7 +1,7 @@
 """Saint-Venant flexure from the boundary: shear areas by energy, and the centre of shear.
 
-The definition of Gruttmann and Wagner (Computational Mechanics 27, 2001): σ_z grows along the beam by αx + βy, and the shear
-stress obeys div τ = −(αx + βy), curl τ = ν/(1 + ν)·(βx − αy), no traction on the boundary. With c = ν/(2(1 + ν))
+The definition of Gruttmann and Wagner (Computational Mechanics 27, 2001): σ_z grows along the beam by αx + βy, and the
+shear stress obeys div τ = −(αx + βy), curl τ = ν/(1 + ν)·(βx − αy), no traction on the boundary. With c = ν/(2(1 + ν))
 
     τ = ∇ψ + h,  h = c(αy², βx²),  ψ = −(αx³ + βy³)/6 + φ,  ∇²φ = 0,
     ∂φ/∂n ds = dv = T_y dx − T_x dy,  T = (α(cy² − x²/2), β(cx² − y²/2)).
@@ -38,9 +38,9 @@ class Flexure:
 class Shear:
     """Flexure of the region in its own frame at one Poisson's ratio.
 
-    `compliance` (2, 2) is F_ij = ∫τⁱ·τʲ dA for unit forces along the axes, 1/F_xx and 1/F_yy the shear areas; `centre` the
-    point through which forces pass that give no mean twist; `potential` (N, 2) and `rate` (N, 2) are ψ and dv/du of φ for
-    unit forces; `skew` is |F_xy − F_yx|, which should vanish.
+    `compliance` (2, 2) is F_ij = ∫τⁱ·τʲ dA for unit forces along the axes, 1/F_xx and 1/F_yy the shear areas; `centre`
+    the point through which forces pass that give no mean twist; `potential` (N, 2) and `rate` (N, 2) are ψ and dv/du of
+    φ for unit forces; `skew` is |F_xy − F_yx|, which should vanish.
     """
 
     compliance: Floats
@@ -52,7 +52,8 @@ class Shear:
 def flexure(nodes: Nodes, points: Complexes) -> Flexure:
     """Return the conjugates of the four parts, single-valued around the voids in which `points` (V,) lie.
 
-    ∮dv around a void is the flux ∫(αx + βy) dA of the void, up to sign; m_k = −(1/2π)∮dv on a clockwise loop takes it out.
+    ∮dv around a void is the flux ∫(αx + βy) dA of the void, up to sign; m_k = −(1/2π)∮dv on a clockwise loop takes it
+    out.
     """
     x, y, dx, dy = nodes.z.real, nodes.z.imag, nodes.slope.real, nodes.slope.imag
     rate = np.column_stack([0.5 * x * x * dy, -y * y * dy, -0.5 * y * y * dx, x * x * dx])

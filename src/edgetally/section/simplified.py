@@ -16,8 +16,8 @@ STRAIGHT = 1e-12
 def simplified(loop: Sequence[Curve], size: float) -> list[Curve]:
     """Return the curves of a loop without negligible pieces, and with lines that continue each other made one.
 
-    The ends of neighbours of a piece left out stay where they are, up to 1e-10 of the size apart; lines are drawn to the
-    next start, so that chords lose nothing.
+    The ends of neighbours of a piece left out stay where they are, up to 1e-10 of the size apart; lines are drawn to
+    the next start, so that chords lose nothing.
     """
     kept = [curve for curve in loop if curve.length > NEGLIGIBLE * size]
     joined: list[Curve] = []

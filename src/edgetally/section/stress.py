@@ -91,7 +91,7 @@ def _clear(nodes: Nodes) -> tuple[Mask, float]:
     shorter = np.minimum(boundary.length, boundary.length[boundary.following])[sharp]
     radius = CLEAR * shorter
     apart = np.abs(panels.samples[:, :, None] - boundary.end[sharp])
-    clear: Mask = (apart >= radius).all(axis=(1, 2))
+    clear: Mask = np.min(apart - radius, axis=(1, 2)) >= 0.0
     if not clear.any():
         clear = np.ones(len(panels), dtype=bool)
     return clear, float(radius.max())

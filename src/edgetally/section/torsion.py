@@ -1,7 +1,7 @@
 """Saint-Venant torsion from the boundary values of the warping function: J, Trefftz's shear centre, C_w.
 
-The warping function ω about the centroid: ∇²ω = 0, ∂ω/∂n = y n_x − x n_y on every boundary. Its conjugate is ½(x² + y²) on
-each loop, up to a constant per void.
+The warping function ω about the centroid: ∇²ω = 0, ∂ω/∂n = y n_x − x n_y on every boundary. Its conjugate is ½(x² + y²)
+on each loop, up to a constant per void.
 """
 
 from __future__ import annotations
@@ -19,8 +19,8 @@ from edgetally.section.nodes import Nodes
 class Torsion:
     """Torsion of the region in its own frame (centroid at the origin, principal axes, A = 1).
 
-    `omega` (N,): ω about the shear centre with mean 0 over the area, at the nodes; `warping_about_centroid` (N,) the ω of
-    the equation; `leak` the largest part of Cauchy's formula in the voids that should vanish and does not.
+    `omega` (N,): ω about the shear centre with mean 0 over the area, at the nodes; `warping_about_centroid` (N,) the ω
+    of the equation; `leak` the largest part of Cauchy's formula in the voids that should vanish and does not.
     """
 
     torsion_constant: float
@@ -54,8 +54,10 @@ def first_moments(nodes: Nodes, values: Floats, flux: Floats) -> tuple[float, fl
 def torsion(nodes: Nodes, omega: Floats, moments: Floats, points: Complexes) -> Torsion:
     """Derive the constants of torsion from ω (N,) about the centroid; `points` (V,) lie inside the voids.
 
+    In the frame, whose axes are principal:
+
         J = I_p − ∮ω (x dx + y dy)
-        x_s = −∫yω dA / I_x,  y_s = ∫xω dA / I_y      (Trefftz 1935, principal axes)
+        x_s = −∫yω dA / I_x,  y_s = ∫xω dA / I_y      (Trefftz 1935)
         C_w = ∫ω_s² dA,  ω_s = ω − y_s x + x_s y − mean
     """
     _, rate = conjugate(nodes)
@@ -77,8 +79,8 @@ def warping_constant(nodes: Nodes, omega: Floats, centre: complex, points: Compl
         ∫f² dA = 1/(2i) ∮ conj(z) f² dz,    ∫|f|² dA = 1/(2i) ∮ f G dz,  ∂G/∂conj(z) = conj(f).
 
     Where ∮f dz = 0 around every void G is the conjugate of the antiderivative F. Else the residues r_k are split off at
-    points a_k in the voids: f = F′ + Σ r_k/(z − a_k) and G = conj(F) + Σ conj(r_k)·2 ln|z − a_k|. The constants of f and F
-    on each void follow from Cauchy's formula, ∮f/(ζ − a_k) dζ = 0.
+    points a_k in the voids: f = F′ + Σ r_k/(z − a_k) and G = conj(F) + Σ conj(r_k)·2 ln|z − a_k|. The constants of f
+    and F on each void follow from Cauchy's formula, ∮f/(ζ − a_k) dζ = 0.
     """
     z, dz = nodes.z, nodes.dz
     away = z - centre

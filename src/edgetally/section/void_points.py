@@ -18,8 +18,9 @@ SAMPLES = 8
 def void_points(boundary: Boundary) -> Complexes:
     """Return a point (V,) inside each void, near the centre of its largest inscribed circle.
 
-    From points of the loop one looks straight across the void to the first other side; of the middles of these views the
-    one furthest from the boundary is moved on by a search with halving steps. Thin slots in any direction are found so.
+    From points of the loop one looks straight across the void to the first other side; of the middles of these views
+    the one furthest from the boundary is moved on by a search with halving steps. Thin slots in any direction are found
+    so.
     """
     nodes = Nodes.on(whole(boundary, SAMPLES))
     found = [_inside(nodes.z[nodes.loop == k], nodes.slope[nodes.loop == k]) for k in range(1, nodes.loop_count)]
