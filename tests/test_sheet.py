@@ -66,7 +66,7 @@ def test_head_evidence_and_caution_are_on_the_page() -> None:
     for words in (
         "Lower bracket", "DG4-17", "Q. V.", "2026-03-31", "bracket.dxf", digest, "OUTLINE", "mm (from file header)",
         "1:1 (drawn = real)", "2 read = 2 used + 0 left out", "1 CIRCLE, 1 LWPOLYLINE", "scale 1:2",
-        "1 outer boundary, 1 void", "page 1 of 1", "edgetally 0.1.0", "licensed professional", "codes that apply",
+        "1 outer boundary, 1 void", "page 1 of 2", "page 2 of 2", "edgetally 0.1.0", "licensed professional", "codes that apply",
         "Mohr's circle", "2θ = 47.3745°", "some texts use the other sign", "Checked by, date", "Signature",
     ):  # fmt: skip
         assert words in text
@@ -92,7 +92,7 @@ def test_everything_is_drawn_within_the_page() -> None:
 def test_paper(page_size: str, size: tuple[float, float]) -> None:
     pdf = sheet_pdf(analyse(SAMPLES / "bracket.dxf", layer="OUTLINE"), page=page_size)
     reader = pypdf.PdfReader(io.BytesIO(pdf))
-    assert len(reader.pages) == 1
+    assert len(reader.pages) == 2
     assert (float(reader.pages[0].mediabox.width), float(reader.pages[0].mediabox.height)) == pytest.approx(
         size, abs=0.01
     )
@@ -178,7 +178,8 @@ def test_metadata_and_bookmarks_and_no_way_out() -> None:
     assert reader.metadata.title == "Lower bracket: section properties"
     assert reader.metadata.author == "Q. V."
     assert str(reader.metadata.creator).startswith("edgetally")
-    assert [entry.title for entry in reader.outline] == ["bracket.dxf"]
+    assert [entry.title for entry in reader.outline[:1]] == ["bracket.dxf"]
+    assert [entry.title for entry in reader.outline[1]] == ["Torsion and shear"]
     assert all("/Annots" not in page for page in reader.pages)
     assert "/AA" not in reader.trailer["/Root"]
     assert "/Names" not in reader.trailer["/Root"] or "/JavaScript" not in reader.trailer["/Root"]["/Names"]
@@ -222,9 +223,22 @@ def test_many_findings_flow_to_further_pages_in_full(tmp_path: Path) -> None:
 def test_each_section_has_its_page() -> None:
     analysis = analyse(SAMPLES / "two-clamps.dxf", layer="OUTLINE", select="each")
     reader = pypdf.PdfReader(io.BytesIO(sheet_pdf(analysis)))
-    assert len(reader.pages) == 2
-    assert [entry.title for entry in reader.outline] == ["Section 1", "Section 2"]
+    assert len(reader.pages) == 4
+    assert [entry.title for entry in reader.outline[::2]] == ["Section 1", "Section 2"]
     assert "section 1 of 2" in reader.pages[0].extract_text()
+
+
+def test_the_torsion_page_has_numbers_errors_and_the_warping(tmp_path: Path) -> None:
+    analysis = analyse(SAMPLES / "purlin-zed.dxf", layer="OUTLINE")
+    reader = pypdf.PdfReader(io.BytesIO(sheet_pdf(analysis)))
+    text = re.sub(r"\s+", " ", reader.pages[-1].extract_text())
+    solution = analysis.sections[0].connected.solution
+    assert solution is not None
+    for words in ("torsion constant 921.411 mm⁴", "relative error 4 × 10⁻⁷", "shear area along axis 1", "ν = 0.3"):
+        assert words in text
+    # bands of both signs are there, and no more of them than the outline has pieces, or nearly
+    filled = sum(1 for _, operator, colour in operations(reader.pages[-1]) if operator in (b"B*", b"b*") and colour)
+    assert 8 < filled < 80
 
 
 def test_symbols_of_the_european_and_american_sets() -> None:

@@ -3,14 +3,16 @@
 from __future__ import annotations
 
 import hashlib
+import logging
 import struct
 from collections import Counter
 from collections.abc import Iterator
 from dataclasses import dataclass, field
+from itertools import chain
 from pathlib import Path
 
 from ezdxf.document import Drawing as Document
-from ezdxf.entities import DXFEntity
+from ezdxf.entities.dxfentity import DXFEntity, DXFTagStorage
 from ezdxf.entities.subentity import LinkedEntities
 from ezdxf.lldxf.const import DXFError
 
@@ -54,6 +56,12 @@ _UNREADABLE = (
 )
 
 
+_GRAPHIC = {8: "layer", 6: "linetype", 60: "invisible"}
+
+# The library warns on standard error of what is repaired and listed here, or harmless.
+logging.getLogger("ezdxf").addHandler(logging.NullHandler())
+
+
 @dataclass(frozen=True, eq=False)
 class Loaded:
     """A document in memory, what identifies the file it came from, and the repairs that were needed to read it.
@@ -93,8 +101,9 @@ def load(path: str | Path) -> Loaded:
     structure = read_repaired(stream)
     try:
         document = Document.load(library_tags(structure))
+        document.modelspace()
     except _UNREADABLE as error:
-        raise damaged(str(path), f"the library that reads DXF says: {error or type(error).__name__}") from None
+        raise damaged(str(path), f"the library that reads DXF says: {type(error).__name__} {error}") from None
     left_out = lost(structure, _counts(document))
     if left_out is not None:
         raise DrawingError(left_out.message, [left_out])
@@ -124,13 +133,22 @@ def _counts(document: Document) -> dict[str, Counter[str]]:
     for record in document.block_records:
         count = Counter(kind for entity in record.entity_space for kind in _kinds(entity))
         found[record.dxf.name.casefold()] = count
-    spaces = (document.modelspace(), document.layouts.active_layout())
-    found[""] = sum((found[space.block_record.dxf.name.casefold()] for space in spaces), Counter())
+    found[""] = found["*model_space"] + found["*paper_space"]
     return found
 
 
 def _kinds(entity: DXFEntity) -> Iterator[str]:
-    """Yield the kind of an entity, and of those that follow it in a file: vertices and attributes."""
+    """Yield the kind of an entity, and of those that follow it in a file: vertices and attributes.
+
+    An entity of a kind that the library does not know is told its layer, so that it can be listed as left out.
+    """
     yield entity.dxftype()
+    if isinstance(entity, DXFTagStorage):
+        for tag in chain(*entity.xtags.subclasses[:2]):
+            if tag.code in _GRAPHIC:
+                entity.dxf.unprotected_set(_GRAPHIC[tag.code], tag.value)
+        for name, default in (("layer", "0"), ("linetype", "BYLAYER"), ("invisible", 0)):
+            if not entity.dxf.hasattr(name):
+                entity.dxf.unprotected_set(name, default)
     if isinstance(entity, LinkedEntities):
         yield from (follower.dxftype() for follower in entity.all_sub_entities())

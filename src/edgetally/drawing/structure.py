@@ -162,9 +162,8 @@ def _not_closed(structure: Structure, name: str, opened: int, where: str) -> Non
 
 
 def _truncated(stream: TagStream, what: str) -> DrawingError:
-    message = (
-        f"{stream.name} ends before it is complete: {what}, so parts of the drawing are missing; export or copy it again"
-    )
+    why = f"{what}, so parts of the drawing are missing"
+    message = f"{stream.name} ends before it is complete: {why}; export or copy it again"
     return DrawingError(message, [Finding("truncated-file", "error", message)])
 
 
@@ -301,7 +300,9 @@ def _tables(structure: Structure) -> None:
     structure.sections["TABLES"] = result
     structure.changed = True
     if moved or table is not None:
-        structure.findings.append(repaired("the tables (of layers, line types and so on) do not nest; they were sorted"))
+        structure.findings.append(
+            repaired("the tables (of layers, line types and so on) do not nest; they were sorted")
+        )
     if odd:
         listed = ", ".join(f"{count} x {kind[:40]}" for kind, count in odd.items())
         structure.findings.append(repaired(f"the tables hold what does not belong there, left out: {listed}"))

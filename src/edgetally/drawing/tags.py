@@ -86,11 +86,9 @@ def _read_ascii(data: bytes, name: str) -> TagStream:
         text = decode(data)
     version = re.search(r"\$ACADVER\s+1\s+(\S+)", text[:HEAD])
     text = unescaped(text).replace("\r\n", "\n").replace("\r", "\n")
-    lines = text.split("\n")
+    lines = text.rstrip("\x00\x1a \t\n").split("\n")
     first = next((i for i, line in enumerate(lines) if line.strip()), 0)
     del lines[:first]
-    if lines and not lines[-1]:
-        lines.pop()
     words, values = lines[0::2], lines[1::2]
     end = _end_mark(words, values)
     stream = TagStream(
@@ -99,8 +97,9 @@ def _read_ascii(data: bytes, name: str) -> TagStream:
     if end is not None:
         _note_tail(stream, "\n".join(lines[2 * end + 2 :]))
         del words[end:], values[end:]
+    elif len(words) > len(values) and (not words[-1].strip() or words[-1].strip().isdigit()):
+        words.pop()  # the file ends between a group code and its value
     stream.codes = _codes(stream, words)
-    del stream.codes[len(values) :]  # the file ends between a group code and its value
     if COMMENT in stream.codes:
         stream.positions = [i for i, code in enumerate(stream.codes) if code != COMMENT]
         stream.codes = [stream.codes[i] for i in stream.positions]
@@ -176,7 +175,7 @@ def _read_binary(data: bytes, name: str) -> TagStream:
     values: list[Any] = []
     positions: list[int] = []
     at, complete = len(BINARY), False
-    # a file begins with the tag (0, SECTION), or with a comment (999): with one byte 00 "S" or FF E7, with two 00 00 or E7 03
+    # a file begins with (0, SECTION) or a comment (999): in one byte 00 "S" or FF E7 03, in two bytes 00 00 or E7 03
     wide = data[at + 1 : at + 2] in (b"\x00", b"\x03")
     try:
         while True:

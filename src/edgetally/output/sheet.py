@@ -17,6 +17,8 @@ from edgetally.output.numbers import value_text
 from edgetally.output.paper import BOLD, REGULAR, PdfPen, fitted, printable, register_fonts, text_width, wrapped
 from edgetally.output.pens import ACCENT, INK, MUTED, Colour, draw
 from edgetally.output.symbols import AXES, KEYS, SymbolSet, symbol_of
+from edgetally.output.torsion_words import torsion_notes, torsion_rows
+from edgetally.output.warping import warping_picture
 from edgetally.output.words import CAUTION, conventions, described, evidence, header_fields, in_print
 from edgetally.section.connected import KEYS as CONNECTED
 from edgetally.section.record import Property
@@ -24,6 +26,7 @@ from edgetally.section.record import Property
 if TYPE_CHECKING:
     from edgetally.analysis import Analysis, SectionResult
     from edgetally.findings import Finding
+    from edgetally.section.solution import TorsionSolution
 
 PAGES = {"a4": A4, "letter": LETTER}
 LEFT, RIGHT, TOP, BOTTOM = 18 * POINTS_PER_MM, 11 * POINTS_PER_MM, 11 * POINTS_PER_MM, 9 * POINTS_PER_MM
@@ -101,6 +104,45 @@ class _Sheet:
         rest = findings[shown:]
         while rest:
             rest = self._continued(section, rest)
+        if section.connected.solution is not None:
+            self._torsion_page(section, section.connected.solution)
+
+    def _torsion_page(self, section: SectionResult, solution: TorsionSolution) -> None:
+        """The second page: the warping along the outline, and what torsion and shear give, with errors."""
+        self.number += 1
+        mark = f"page{self.number}"
+        self.canvas.bookmarkPage(mark)
+        self.canvas.addOutlineEntry("Torsion and shear", mark, level=1)
+        y = self._head(section)
+        foot = self._foot(section)
+        rows = torsion_rows(section, solution, self.symbols)
+        notes = [line for text in torsion_notes(section, solution) for line in self._wrapped_note(text)]
+        width = self.right - self.left
+        table = LEADING * len(rows) + 26.0
+        below = LEADING * len(notes) + 8.0
+        height = min(y - foot - table - below - 22.0, 0.9 * width)
+        top = y - 6.0
+        self._frame(self.left, top, width, height)
+        self.pen.text(self.left + 6.0, top - 12.0, "Warping ω about the shear centre, along the outline", BODY, BOLD)
+        picture = warping_picture(section, solution, width, height - 14.0)
+        draw(picture, self.pen, complex(self.left, top - height))
+        y = self._heading("Torsion, warping and shear", self.left, self.right, top - height - 6.0)
+        for symbol, name, value, unit, error in rows:
+            self.pen.symbol(self.left, y, symbol, BODY)
+            self.pen.text(self.left + 42.0, y, name, BODY)
+            self.pen.text(self.left + 0.74 * width - text_width(value, BODY, BOLD), y, value, BODY, BOLD)
+            self.pen.text(self.left + 0.74 * width + 3.0, y, unit, BODY)
+            self.pen.text(self.right - text_width(error, SMALL), y, error, SMALL, colour=MUTED)
+            self._rule(self.left, self.right, y - 2.9, 0.25, LIGHT)
+            y -= LEADING
+        y -= 4.0
+        for line in notes:
+            self.pen.sentence(self.left, y, line, SMALL)
+            y -= LEADING
+        self.canvas.showPage()
+
+    def _wrapped_note(self, text: str) -> list[str]:
+        return wrapped(text, SMALL, self.right - self.left)
 
     def _open_page(self, section: SectionResult) -> None:
         self.number += 1

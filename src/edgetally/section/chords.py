@@ -2,8 +2,8 @@
 
 A finely chopped arc has thousands of corners, each of which turns by little. In the solution the chords act like a
 smooth boundary in their mean position: one that cuts off as much as it adds, inside the vertices by κh²/12. What is
-left is of the third order in the turn θ of a vertex: J of a regular polygon is 1 − 0.033·θ³ of that of the circle of
-its area (0.036 for the hexagon, where θ = π/3). Runs that turn too sharply for that are left as they are.
+left is of the third order in the turn θ of a vertex: J of a regular polygon is 1 − 0.039·θ³ of that of the circle of
+its area (0.0315 for the hexagon, where θ = π/3). Runs that turn too sharply for that are left as they are.
 """
 
 from __future__ import annotations

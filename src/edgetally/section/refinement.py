@@ -60,9 +60,13 @@ def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> 
         yield resolution
         ratio = resolution.torsion.torsion_constant / float(frame.moments[0, 2] + frame.moments[2, 0])
         joint = float(np.sqrt(np.clip(ratio, JOINT**2, 1.0)))
-        panels = _finer(resolution, cut, joint * cut, points)
-        if int(panels.order.sum()) > limit or cut < ROUNDING:
+        finer = _finer(resolution, cut, joint * cut, points)
+        if int(finer.order.sum()) > limit:
+            finer = panels.with_order(np.minimum(panels.order + MORE_NODES, MOST_NODES))
+        grown = int(finer.order.sum())
+        if grown > limit or grown < (1.0 + GROWTH) * panels.order.sum() or cut < ROUNDING:
             return
+        panels = finer
         cut *= 0.1
 
 

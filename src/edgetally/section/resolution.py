@@ -16,6 +16,9 @@ from edgetally.section.panels import Panels
 from edgetally.section.shear import Shear
 from edgetally.section.torsion import Torsion
 
+# A warping that ranges over less than this share of I_p/A, as that of a circle drawn by chords, is not resolved for itself.
+LEAST = 0.02
+
 
 @dataclass(frozen=True, eq=False)
 class Resolution:
@@ -45,15 +48,20 @@ def resolve(frame: Frame, panels: Panels, points: Complexes, poisson: float) -> 
     bent = flexural.shear(nodes, harmonic, parts.rate, frame.moments, poisson)
     plain = bent if poisson == 0.0 else flexural.shear(nodes, harmonic, parts.rate, frame.moments, 0.0)
     fields = np.column_stack([solution, turned.omega])
-    return Resolution(nodes, turned, bent, plain, _coarseness(nodes, fields))
+    least = np.zeros(fields.shape[1])
+    least[[0, -1]] = LEAST * float(frame.moments[0, 2] + frame.moments[2, 0])
+    return Resolution(nodes, turned, bent, plain, _coarseness(nodes, fields, least))
 
 
-def _coarseness(nodes: Nodes, fields: Floats) -> Floats:
-    """Return for each panel the largest tail of a field (N, R), relative to the field's range, times √(half length)."""
+def _coarseness(nodes: Nodes, fields: Floats, least: Floats) -> Floats:
+    """Return for each panel the largest tail of a field (N, R), relative to the field's range, times √(half length).
+
+    `least` (R,) is what a range is taken for at least.
+    """
     result = np.zeros(len(nodes.panels))
     root = np.sqrt(0.5 * nodes.panels.length)
-    for field in fields.T:
-        spread = float(np.ptp(field))
+    for field, low in zip(fields.T, least, strict=True):
+        spread = max(float(np.ptp(field)), float(low))
         if spread > 0.0:
             np.maximum(result, nodes.tails(field) / spread * root, out=result)
     return result

@@ -30,6 +30,10 @@ __all__ = ["Number", "TorsionSolution", "UnsolvableError", "WarpingLine", "solve
 
 # Memory is about 3·8·N² bytes, time some N³/2e10 s: half a gigabyte and a few seconds.
 MAX_UNKNOWNS = 4800
+# Two resolutions may agree by chance, or because neither was refined where it matters. A third is asked for before they
+# are believed, as long as it costs next to nothing.
+ROUNDS = 3
+QUICK = 1200
 # With a larger relative error there is no result to speak of.
 MEANINGLESS = 0.01
 
@@ -64,7 +68,7 @@ def solve(
                 history.append(numbers_of(frame, best, smoothing))
                 if len(history) > 1:
                     errors = compared(history[-1], history[-2], axes_of(frame))
-                    if errors.worst <= tolerance:
+                    if errors.worst <= tolerance and (len(history) >= ROUNDS or len(best.nodes) > QUICK):
                         break
     except TooManyUnknownsError as refusal:
         needed = f"torsion needs at least {refusal.needed} unknowns for this outline"
