@@ -13,7 +13,7 @@ from typing import Any
 import ezdxf
 import pytest
 from command import run
-from drawings import drawing, square
+from drawings import drawing
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
@@ -138,7 +138,7 @@ def test_section_not_closed(tmp_path: Path) -> None:
 
 def test_sections_of_one_name_are_all_read(tmp_path: Path) -> None:
     part = "\n".join(["0", "SECTION", "2", "ENTITIES", *line(), "0", "ENDSEC", ""])
-    found = loaded(tmp_path, part * 3 + "0\nEOF\n", "3 sections ENTITIES")
+    found = loaded(tmp_path, (part * 3 + "0\nEOF\n").replace("5\n2F\n", ""), "3 sections ENTITIES")
     assert len(found.document.modelspace()) == 3
 
 
@@ -205,6 +205,11 @@ def test_name_that_no_table_holds(tmp_path: Path) -> None:
     loaded(tmp_path, text.replace("  6\nCENTER\n", "  6\nCNTR\n"), "line types", "CNTR")
     at = text.index("AcDbEntity", text.index("ENTITIES"))
     loaded(tmp_path, text[:at] + text[at:].replace("OUTLINE", "OUTLYNE", 1), "layers", "OUTLYNE")
+
+
+def test_table_that_a_program_does_not_fill(tmp_path: Path) -> None:
+    table = "0\nSECTION\n2\nTABLES\n0\nTABLE\n2\nLAYER\n0\nLAYER\n2\n0\n70\n0\n0\nENDTAB\n0\nENDSEC\n"
+    assert load(written(tmp_path, table + entities(*line()))).findings == ()
 
 
 # -- single entities ---------------------------------------------------------------------------------------------------
@@ -386,7 +391,7 @@ def test_text_that_fits_no_encoding(tmp_path: Path) -> None:
 
 @pytest.mark.parametrize(
     ("written_as", "name"),
-    [(r"H\U+00F6he", NAME), (r"\U+D83D\U+DE00", "\U0001f600"), (r"\M+1889F", "丑"), (r"a\U+000Ab", r"a\U+000Ab")],
+    [(r"H\U+00F6he", NAME), (r"\U+D83D\U+DE00", "\U0001f600"), (r"\M+1889F", "亜"), (r"a\U+000Ab", r"a\U+000Ab")],
 )
 def test_escapes(tmp_path: Path, written_as: str, name: str) -> None:
     found = load(written(tmp_path, entities(*line()).replace("OUTLINE", written_as)))
@@ -431,11 +436,15 @@ def test_nonsense(tmp_path: Path, text: str) -> None:
     refused(tmp_path, entities("0", "CIRCLE", "40", "9" * 9000, "10", text.replace("\n", "")[:5000], "20", "0"))
 
 
+def test_binary_file_sent_as_text(tmp_path: Path) -> None:
+    refused(tmp_path, BINARY.replace(b"\r\n", b"\n") + b"\x00SECTION\x00", "sent as a text")
+
+
 # -- laws --------------------------------------------------------------------------------------------------------------
 
 KEYS = ("area", "second_moment_x", "second_moment_y", "centroid_x")
 JUNK = st.sampled_from(["junk", "", "?", "12,5", "nan", "1e400", "-", "x" * 300, "\u00f6", "0x1F", "LINE ", "{"])
-LAW = settings(max_examples=90, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
+LAW = settings(max_examples=40, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
 
 
 def measured(path: Path) -> tuple[tuple[float, ...], list[Finding]]:
@@ -456,8 +465,7 @@ def check_law(folder: Path, version: str, content: bytes) -> None:
     path = written(folder, content)
     try:
         values, findings = measured(path)
-    except EdgetallyError as error:
-        assert str(error)
+    except EdgetallyError:
         return
     if values != pytest.approx(expected(version), rel=1e-9):
         repairs = [f for f in findings if f.code in ("repaired-file", "entity-skipped") and f.severity == "warning"]
@@ -505,7 +513,7 @@ def test_real_drawings_are_read_whole() -> None:
         raw = read_structure(read_tags(path.read_bytes(), path.name)).counts()
         for block, kinds in raw.items():
             if block:
-                space = list(found.document.blocks.get(block))
+                space = list(found.document.blocks.get(block) or ())
             else:
                 spaces = (found.document.modelspace(), found.document.layouts.active_layout())
                 space = [e for s in spaces for e in s if not (s is spaces[1] and e.dxftype() == "VIEWPORT")]

@@ -16,6 +16,7 @@ from ezdxf.entities.dxfentity import DXFEntity, DXFTagStorage
 from ezdxf.entities.subentity import LinkedEntities
 from ezdxf.lldxf.const import DXFError
 
+from edgetally.drawing.encoding import utf16_text
 from edgetally.drawing.limits import MAX_BYTES
 from edgetally.drawing.repair import library_tags, lost, read_repaired
 from edgetally.drawing.tags import BINARY, damaged, read_tags
@@ -103,7 +104,8 @@ def load(path: str | Path) -> Loaded:
         document = Document.load(library_tags(structure))
         document.modelspace()
     except _UNREADABLE as error:
-        raise damaged(str(path), f"the library that reads DXF says: {type(error).__name__} {error}") from None
+        words = f"{error}" if isinstance(error, DXFError) else f"{type(error).__name__} {error}"
+        raise damaged(str(path), f"the library that reads DXF says: {words}") from None
     left_out = lost(structure, _counts(document))
     if left_out is not None:
         raise DrawingError(left_out.message, [left_out])
@@ -114,8 +116,12 @@ def load(path: str | Path) -> Loaded:
 def _refuse_other_kinds(path: Path, data: bytes) -> None:
     if not data.strip():
         raise DrawingError(f"{path} is empty; export the drawing again")
-    if data.startswith((BINARY, b"\xff\xfe", b"\xfe\xff")):
+    if data.startswith(BINARY) or "SECTION" in (utf16_text(data) or ""):
         return
+    if data.startswith(BINARY[:18]):
+        raise DrawingError(
+            f"{path} is a binary DXF file whose bytes were changed when it was sent as a text; copy it again as it is"
+        )
     head = data[:64].lstrip(b"\xef\xbb\xbf \t\r\n")
     for magic, kind in _OTHER_KINDS.items():
         if head.startswith(magic):

@@ -12,8 +12,9 @@ from typing import Any
 
 from ezdxf.lldxf.types import DXFTag
 
+from edgetally.drawing.nesting import mend_nesting
 from edgetally.drawing.numerals import check_numbers, describe
-from edgetally.drawing.structure import Record, Structure, block_name, mend_nesting, read_structure, value_of
+from edgetally.drawing.structure import Record, Structure, read_structure, value_of
 from edgetally.drawing.tags import TagStream, damaged, repaired, tag_of
 from edgetally.findings import Finding
 
@@ -135,9 +136,10 @@ def _check_entities(structure: Structure) -> None:
         structure.changed = True
         listed = ", ".join(f"{count} x {kind}" for kind, count in unmarked.items())
         structure.findings.append(repaired(f"subclass markers (group code 100) were missing and were put in: {listed}"))
-    _check_table(structure, "LAYER", layers, "layers", {"0"})
-    line_types |= {str(value_of(stream, r, 6)) for r in structure.sections.get("TABLES", ()) if r.kind == "LAYER"}
-    _check_table(structure, "LTYPE", line_types, "line types", {"", "none", "bylayer", "byblock", "continuous"})
+    _check_table(structure, "LAYER", layers, "layers", {"0", "defpoints"})
+    layer_entries = (r for r in structure.sections.get("TABLES", ()) if r.kind == "LAYER")
+    line_types |= {str(value_of(stream, r, 6) or "") for r in layer_entries}
+    _check_table(structure, "LTYPE", line_types, "line types", {"", "bylayer", "byblock", "continuous"})
 
 
 def _check_count(structure: Structure, record: Record, own: list[int], said_by: int, code: int, what: str) -> None:
@@ -170,11 +172,14 @@ def _mark(structure: Structure, record: Record) -> None:
 
 
 def _check_table(structure: Structure, table: str, used: set[str], what: str, always: set[str]) -> None:
-    """List names that no table explains: a layer or line type whose name was damaged would change what is read."""
+    """List names that no table explains: a layer or line type whose name was damaged would change what is read.
+
+    A table with nothing but the names that every drawing has comes from a program that does not fill it.
+    """
     records = [r for r in structure.sections.get("TABLES", ()) if r.kind == table]
-    known = {str(value_of(structure.stream, r, 2)).strip().casefold() for r in records} | always
-    missing = sorted(name for name in used if name.strip().casefold() not in known and name != "None")
-    if records and missing:
+    known = {str(value_of(structure.stream, r, 2)).strip().casefold() for r in records}
+    missing = sorted(name for name in used if name.strip().casefold() not in known | always)
+    if known - always and missing:
         listed = ", ".join(name[:60] for name in missing[:10]) + (" and more" if len(missing) > 10 else "")
         text = f"entities name {what} that are not in the drawing's table of {what}: {listed}; one may be misspelt"
         structure.findings.append(repaired(text))
@@ -255,6 +260,3 @@ def lost(structure: Structure, loaded: dict[str, Counter[str]]) -> Finding | Non
         return None
     message = f"{structure.stream.name} cannot be read whole: the library left out {', '.join(missing)}"
     return Finding("entity-unreadable", "error", f"{message}; export the drawing again, or report the file")
-
-
-__all__ = ["block_name", "library_tags", "lost", "read_repaired"]

@@ -22,6 +22,8 @@ TOUCH = 1e-9
 """Boundaries nearer than this share of the drawing's extent are taken to touch: a thousandth of a micron in a metre."""
 FOLD = 1e-9
 """Two straight pieces that leave a corner at a smaller angle [rad] than this run over each other."""
+PARTING = 0.9
+"""Cosine of the angle between two curves as they leave a corner: above it they may run close to each other."""
 REPORTED = 12
 
 
@@ -35,7 +37,7 @@ def refuse_crossings(loops: Sequence[Loop]) -> None:
     boxes = packed.boxes
     extent = float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max())
     touch = TOUCH * extent
-    grown = boxes + [-touch, -touch, touch, touch]
+    grown = boxes + np.array([-touch, -touch, touch, touch])
     shapes = shapely.box(*grown.T)
     one, other = shapely.STRtree(shapes).query(shapes)
     keep = one < other
@@ -47,7 +49,8 @@ def refuse_crossings(loops: Sequence[Loop]) -> None:
     suspects = np.concatenate([
         np.flatnonzero(straight & adjacent)[_folds(packed, follower, one, other, straight & adjacent)],
         np.flatnonzero(straight & ~adjacent)[_near(packed, one, other, straight & ~adjacent, touch)],
-        np.flatnonzero(~straight),
+        np.flatnonzero(~straight & ~adjacent),
+        np.flatnonzero(~straight & adjacent)[~_plain_joints(packed, follower, one, other, ~straight & adjacent, touch)],
     ])  # fmt: skip
     run = _Run(loops, curves, packed)
     found: list[tuple[complex, Curve, Curve]] = []
@@ -84,6 +87,49 @@ def _folds(
     return (turn.real > 0) & (np.abs(turn.imag) <= FOLD * turn.real)
 
 
+def _plain_joints(
+    packed: Packed,
+    follower: NDArray[np.intp],
+    one: NDArray[np.intp],
+    other: NDArray[np.intp],
+    which: NDArray[np.bool_],
+    touch: float,
+) -> NDArray[np.bool_]:
+    """Tell which of the chosen neighbours, of which an arc is one, surely meet in their common corner N only.
+
+    They must part there at more than about 25°, or go on smoothly. The line of a straight piece, u from N, meets the
+    circle again at 2·Re(conj(u)·(centre − N)); the circles of two arcs meet again at the mirror image of N in the line
+    of their centres. Whatever is left is decided pair by pair.
+    """
+    i, j = one[which], other[which]
+    forward = follower[i] == j
+    a, b = np.where(forward, i, j), np.where(forward, j, i)
+    known = (packed.is_straight | packed.is_arc)[a] & (packed.is_straight | packed.is_arc)[b]
+    known &= ~((follower[a] == b) & (follower[b] == a))  # a loop of two: they have two corners in common
+    node = packed.start[b]
+    spoke_a = packed.spoke[a] * np.exp(1j * packed.sweep[a])
+    into_a = np.where(packed.is_arc[a], -1j * np.sign(packed.sweep[a]) * spoke_a, packed.start[a] - packed.end[a])
+    into_b = np.where(
+        packed.is_arc[b], 1j * np.sign(packed.sweep[b]) * packed.spoke[b], packed.end[b] - packed.start[b]
+    )
+    with np.errstate(divide="ignore", invalid="ignore"):
+        into_a, length_a = into_a / np.abs(into_a), np.abs(packed.end[a] - packed.start[a])
+        into_b, length_b = into_b / np.abs(into_b), np.abs(packed.end[b] - packed.start[b])
+        parting = (into_a.conj() * into_b).real < PARTING
+        centre_a, centre_b = packed.start[a] - packed.spoke[a], packed.start[b] - packed.spoke[b]
+        again_a = 2.0 * (into_a.conj() * (centre_b - node)).real
+        again_b = 2.0 * (into_b.conj() * (centre_a - node)).real
+        axis = (centre_b - centre_a) / np.abs(centre_b - centre_a)
+        image = np.abs(centre_a + axis**2 * (node - centre_a).conj() - node)
+    straight_a, straight_b = packed.is_straight[a], packed.is_straight[b]
+    clear = np.where(
+        straight_a,
+        (again_a <= touch) | (again_a > length_a + touch),
+        np.where(straight_b, (again_b <= touch) | (again_b > length_b + touch), image <= touch),
+    )
+    return known & parting & clear
+
+
 def _near(
     packed: Packed, one: NDArray[np.intp], other: NDArray[np.intp], which: NDArray[np.bool_], touch: float
 ) -> NDArray[np.bool_]:
@@ -92,7 +138,8 @@ def _near(
     c, d = packed.start[other[which]], packed.end[other[which]]
 
     def side(p: NDArray[np.complex128], q: NDArray[np.complex128], r: NDArray[np.complex128]) -> NDArray[np.float64]:
-        return np.asarray(((q - p).conj() * (r - p)).imag)
+        turned: NDArray[np.float64] = ((q - p).conj() * (r - p)).imag
+        return turned
 
     crossing = (side(a, b, c) * side(a, b, d) < 0) & (side(c, d, a) * side(c, d, b) < 0)
 
@@ -101,10 +148,12 @@ def _near(
     ) -> NDArray[np.float64]:
         chord = q - p
         t = np.clip(((r - p) * chord.conj()).real / np.abs(chord) ** 2, 0.0, 1.0)
-        return np.abs(p + t * chord - r)
+        apart: NDArray[np.float64] = np.abs(p + t * chord - r)
+        return apart
 
     clearance = np.minimum.reduce([distance(a, b, c), distance(a, b, d), distance(c, d, a), distance(c, d, b)])
-    return crossing | (clearance <= touch)
+    near: NDArray[np.bool_] = crossing | (clearance <= touch)
+    return near
 
 
 class _Run:

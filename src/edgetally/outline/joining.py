@@ -27,7 +27,7 @@ WIDEST_GAP_MM = 0.15
 """Never joined, whatever is asked: ends that far apart are drawn apart."""
 NEIGHBOUR_SHARE = 0.1
 """A join may not be wider than this share of the shorter of the two curves: it would be an edge of its own."""
-ROUNDING = 8 * EPS
+ROUNDING = 64 * EPS
 """Ends nearer than this times the largest coordinate differ by the rounding of their own computation."""
 SLENDER = 4.0
 """A curve whose length exceeds its chord by this factor is not turned about its ends to close a gap."""
@@ -132,10 +132,12 @@ def _pair(ends: _Ends, gap: float) -> _Pairing:
         i, j = one[k], other[k]
         if partner[i] < 0 and partner[j] < 0:
             partner[i], partner[j] = j, i
-    crowded = []
+    crowded: list[list[int]] = []
     for k in np.flatnonzero((partner[one] < 0) != (partner[other] < 0)):
         odd, near = (one[k], other[k]) if partner[one[k]] < 0 else (other[k], one[k])
-        crowded.append([int(odd), int(near), int(partner[near])])
+        three = sorted((int(odd), int(near), int(partner[near])))
+        if three not in crowded:
+            crowded.append(three)
     same = distance <= ends.rounding
     return _Pairing(partner, _groups(one[same], other[same], len(ends.z)), crowded)
 
@@ -183,11 +185,12 @@ def _refuse_open(ends: _Ends, partner: NDArray[np.intp], gap: float, unit: str) 
         if pair in done or (j != k and near.get(j, (k, 0))[0] != k and len(free) > 2):
             continue
         done.add(pair)
-        a, b = ends.curves[end // 2].source, ends.curves[free[j] // 2].source
+        mine, yours = ends.curves[int(end) // 2], ends.curves[int(free[j]) // 2]
+        a, b = mine.source, yours.source
         joined = f"joined up to {length_text(gap, unit)}"
-        if j == k:
-            message = f"outline is open: {a} ends at {place(z)} and nothing else does"
-            remedy = "close it in the drawing"
+        if j == k or (mine is yours and mine.length <= SLENDER * d):
+            message = f"outline is open: {a} from {place(mine.start)} to {place(mine.end)} meets nothing at its ends"
+            remedy = "close it in the drawing, or move it to another layer"
         else:
             message = f"outline is open: gap {length_text(d, unit)} at {place(z)} between {a} and {b}, {joined}"
             remedy = "close it in the drawing"
@@ -256,16 +259,30 @@ def _weld(ends: _Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
 def _meeting_point(a: Curve, b: Curve) -> tuple[complex, complex]:
     """Return where a ends and where b starts after the join: one point wherever one of them can give way.
 
-    A straight piece gives way to a curved one, whose radius stays as drawn; two alike meet half-way. A curve that all
-    but closes on itself stays, because turning it about so short a chord would move all of it.
+    Two straight pieces meet where their lines do, if that is no farther from either end than the gap; a straight piece
+    gives way to a curved one, whose radius stays as drawn; else two alike meet half-way. A curve that all but closes on
+    itself stays, because turning it about so short a chord would move all of it.
     """
     stiff_a, stiff_b = _stiffness(a), _stiffness(b)
     if stiff_a == stiff_b == 2:
         return a.end, b.start
-    if stiff_a == stiff_b:
-        middle = 0.5 * (a.end + b.start)
-        return middle, middle
-    return (b.start, b.start) if stiff_a < stiff_b else (a.end, a.end)
+    if stiff_a != stiff_b:
+        return (b.start, b.start) if stiff_a < stiff_b else (a.end, a.end)
+    corner = _corner(a, b) if stiff_a == 0 else None
+    meeting = 0.5 * (a.end + b.start) if corner is None else corner
+    return meeting, meeting
+
+
+def _corner(a: Curve, b: Curve) -> complex | None:
+    """Return where the lines of two straight pieces cross, None where that is farther from their ends than they are
+    apart."""
+    along_a, along_b, apart = a.end - a.start, b.end - b.start, b.start - a.end
+    across = (along_a.conjugate() * along_b).imag
+    if across == 0.0:
+        return None
+    corner = a.end + (apart.conjugate() * along_b).imag / across * along_a
+    reach = max(abs(corner - a.end), abs(corner - b.start))
+    return corner if reach <= abs(apart) else None
 
 
 def _stiffness(curve: Curve) -> int:

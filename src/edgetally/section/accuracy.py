@@ -15,8 +15,8 @@ WARPING_SCALE = 1e-5
 # What rounding leaves in the numbers where nothing cancels; J is the difference of I_p and an integral of its size.
 ROUNDING = 1e-14
 # The difference of two resolutions is the error of the coarser. That of the finer has been seen to be as large where it
-# falls slowly, so half as much again is given, and never less than a share of the largest: one may vanish by chance.
-SAFETY = 1.5
+# falls slowly, so twice the difference is given, and never less than a share of the largest: one may vanish by chance.
+SAFETY = 2.0
 CHANCE = 0.1
 
 

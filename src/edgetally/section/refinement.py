@@ -21,7 +21,7 @@ CUT = 6e-5
 # At joints, where the solution is not smooth and its coefficients fall slowly, this share of it is enough for a cut,
 # and √(J/I_p) if that is more: the smaller J is against I_p, of which it is what is left, the more digits of ω it
 # needs.
-JOINT = 0.03
+JOINT = 0.015
 # Panels with this share of it get more nodes.
 ENRICH = 0.1
 MORE_NODES = 2
@@ -63,8 +63,7 @@ def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> 
         finer = _finer(resolution, cut, joint * cut, points)
         if int(finer.order.sum()) > limit:
             finer = panels.with_order(np.minimum(panels.order + MORE_NODES, MOST_NODES))
-        grown = int(finer.order.sum())
-        if grown > limit or grown < (1.0 + GROWTH) * panels.order.sum() or cut < ROUNDING:
+        if not panels.order.sum() < finer.order.sum() <= limit or cut < ROUNDING:
             return
         panels = finer
         cut *= 0.1
