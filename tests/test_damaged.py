@@ -327,6 +327,11 @@ def test_kind_that_is_not_known_is_listed_as_left_out(tmp_path: Path) -> None:
     assert any(f.severity == "warning" and "WIGGLE" in f.message for f in found.findings)
 
 
+@pytest.mark.parametrize("kind", ["LAYER", "ENDBLK", "DICTIONARY"])
+def test_kind_that_is_no_entity(tmp_path: Path, kind: str) -> None:
+    refused(tmp_path, entities(*line(), "0", kind, "2", "A"), f"{kind} at line 20 stands among the entities")
+
+
 def test_kind_in_small_letters(tmp_path: Path) -> None:
     found = loaded(tmp_path, entities(*line()).replace("LINE\n5", "Line\n5"), "1 x LINE", severity="note")
     assert found.document.modelspace()[0].dxftype() == "LINE"

@@ -66,7 +66,8 @@ def test_head_evidence_and_caution_are_on_the_page() -> None:
     for words in (
         "Lower bracket", "DG4-17", "Q. V.", "2026-03-31", "bracket.dxf", digest, "OUTLINE", "mm (from file header)",
         "1:1 (drawn = real)", "2 read = 2 used + 0 left out", "1 CIRCLE, 1 LWPOLYLINE", "scale 1:2",
-        "1 outer boundary, 1 void", "page 1 of 2", "page 2 of 2", "edgetally 0.1.0", "licensed professional", "codes that apply",
+        "1 outer boundary, 1 void", "page 1 of 2", "page 2 of 2", "edgetally 0.1.0", "licensed professional",
+        "codes that apply",
         "Mohr's circle", "2θ = 47.3745°", "some texts use the other sign", "Checked by, date", "Signature",
     ):  # fmt: skip
         assert words in text

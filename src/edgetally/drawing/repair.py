@@ -10,6 +10,9 @@ from collections import Counter
 from collections.abc import Iterator
 from typing import Any
 
+from ezdxf.entities.dxfentity import DXFTagStorage
+from ezdxf.entities.dxfgfx import DXFGraphic
+from ezdxf.entities.factory import ENTITY_CLASSES
 from ezdxf.lldxf.types import DXFTag
 
 from edgetally.drawing.nesting import mend_nesting
@@ -44,6 +47,11 @@ MARKED = {"LWPOLYLINE": "AcDbPolyline", "SPLINE": "AcDbSpline", "HATCH": "AcDbHa
 
 # Group codes that any entity may have (DXF reference, common group codes for graphical objects).
 COMMON = frozenset({6, 8, 48, 60, 62, 67, 284, 347, 348, 370, 380, 390, 410, 420, 430, 440})
+
+# Kinds of tables and settings, which stand in other sections than the entities.
+NOT_DRAWN = frozenset(
+    kind for kind, known in ENTITY_CLASSES.items() if not issubclass(known, DXFGraphic | DXFTagStorage)
+)
 
 _HANDLE = re.compile(r"\s*[0-9A-Fa-f]{1,16}\s*")
 
@@ -116,6 +124,8 @@ def _check_entities(structure: Structure) -> None:
     unmarked: Counter[str] = Counter()
     for name in ("BLOCKS", "ENTITIES"):
         for record in structure.sections.get(name, ()):
+            if record.kind in NOT_DRAWN and not (name == "BLOCKS" and record.kind in ("BLOCK", "ENDBLK")):
+                raise damaged(stream.name, f"{record.kind} at {structure.where(record)} stands among the entities")
             own = _own(structure, record)
             for code, what in NEEDED.get(record.kind, ()):
                 if own.count(code) != 1:

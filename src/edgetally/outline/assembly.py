@@ -9,7 +9,7 @@ from edgetally.errors import OutlineError
 from edgetally.findings import Finding
 from edgetally.outline.crossings import refuse_crossings
 from edgetally.outline.duplicates import without_duplicates
-from edgetally.outline.joining import DEFAULT_GAP_MM, close_loops
+from edgetally.outline.joining import DEFAULT_GAP_MM, ROUNDING, close_loops
 from edgetally.outline.nesting import nest
 from edgetally.outline.records import Loop, Outline
 from edgetally.outline.words import at, handles, place
@@ -25,14 +25,28 @@ def assemble(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "
     `gap` is the join gap in `unit`, the drawing's unit; the default is 0.01 mm. Raises OutlineError with places,
     handles and a remedy for an open chain, a branch, a join too wide, a crossing, a loop without area, no loop at all.
     """
-    cleared = without_duplicates(curves)
+    kept, specks = _without_specks(curves)
+    cleared = without_duplicates(kept)
     loops, joins = close_loops(cleared.curves, DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap, unit)
     if not loops:
         raise OutlineError("no curve there encloses an area")
-    _refuse_flat(loops)
     refuse_crossings(loops)
+    _refuse_flat(loops)
     regions, islands = nest(loops)
-    return Outline(tuple(regions), tuple(joins), tuple(islands), tuple(cleared.findings))
+    return Outline(tuple(regions), tuple(joins), tuple(islands), (*specks, *cleared.findings))
+
+
+def _without_specks(curves: Sequence[Curve]) -> tuple[list[Curve], list[Finding]]:
+    """Leave out what is no longer than the rounding of the coordinates: its neighbours meet without it."""
+    magnitude = max((abs(p) for c in curves for p in (c.start, c.end)), default=0.0)
+    kept = [c for c in curves if c.length > ROUNDING * magnitude]
+    if len(kept) == len(curves):
+        return kept, []
+    specks = [c for c in curves if c.length <= ROUNDING * magnitude]
+    z = specks[0].start
+    named = ", ".join(dict.fromkeys(str(c.source) for c in specks[:6])) + (" …" if len(specks) > 6 else "")
+    message = f"{len(specks)} pieces no longer than rounding were left out: {named}; the first at {place(z)}"
+    return kept, [Finding("tiny-curve-removed", "note", message, at(z), handles(c.source for c in specks))]
 
 
 def _refuse_flat(loops: Sequence[Loop]) -> None:

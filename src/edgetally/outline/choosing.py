@@ -76,8 +76,8 @@ def _picked(regions: Sequence[Region], pick: str, unit: str) -> int:
     except ValueError:
         raise UsageError(f"--pick {pick!r} is not a point X,Y") from None
     inside = [k for k, region in enumerate(regions) if _contains(region, p)]
-    if inside:  # the innermost, where one part lies in a void of another
-        return min(inside, key=lambda k: regions[k].outer.area)
+    if inside:
+        return inside[0]
     return min(range(len(regions)), key=lambda k: min(nearest(c, p)[0] for c in regions[k].outer.curves))
 
 
@@ -85,4 +85,6 @@ def _contains(region: Region, p: complex) -> bool:
     x0, y0, x1, y1 = region.box
     if not (x0 <= p.real <= x1 and y0 <= p.imag <= y1):
         return False
-    return abs(float(region.outer.packed.turning(np.array([p]))[0])) > np.pi
+    at = np.array([p])
+    turns = sum(float(loop.packed.turning(at)[0]) for loop in region.loops)  # 2π in the material, 0 in a void
+    return abs(turns) > np.pi

@@ -34,6 +34,7 @@ def principal_axes(second_x: Bounded, second_y: Bounded, product: Bounded) -> Ax
     if radius <= max(ROUND * both, slack):
         return Axes(Bounded(0.0, 0.0), arbitrary=True)
     angle = 0.5 * atan2(-2.0 * product.value, 2.0 * half)
-    if angle <= -0.5 * pi:  # atan2 gives −π for −0.0
-        angle += pi
-    return Axes(Bounded(angle, 0.5 * slack / radius), arbitrary=False)
+    wander = 0.5 * slack / radius
+    if angle <= -0.5 * pi + wander:  # −90° to rounding is 90°: symmetric sections do not flip by chance
+        angle = min(angle + pi, 0.5 * pi)
+    return Axes(Bounded(angle, wander), arbitrary=False)

@@ -16,7 +16,7 @@ from edgetally.section.panels import Panels
 from edgetally.section.shear import Shear
 from edgetally.section.torsion import Torsion
 
-# A warping that ranges over less than this share of I_p/A, as that of a circle drawn by chords, is not resolved for itself.
+# A warping that ranges over less than this share of I_p/A, as that of a circle of chords, is not resolved for itself.
 LEAST = 0.02
 
 

@@ -1,0 +1,191 @@
+"""Boundaries that cross, touch or run over each other are refused, decided on the true curves."""
+
+from __future__ import annotations
+
+import math
+import random
+import re
+
+import numpy as np
+import pytest
+import shapely
+from build import curves_of
+from outlines import fillet_polygon, i_section, lipped_channel, spandrel
+
+from edgetally import OutlineError
+from edgetally.curves import Arc, Curve, Line
+from edgetally.outline.assembly import assemble
+from edgetally.outline.crossings import refuse_crossings
+from edgetally.outline.records import Loop
+
+
+def polygon(*points: complex) -> list[Curve]:
+    return [Line(a, b) for a, b in zip(points, [*points[1:], points[0]], strict=True)]
+
+
+def circle(centre: complex, radius: float) -> Curve:
+    return Arc.from_centre(centre, radius, 0.4, 2 * math.pi)
+
+
+SQUARE = polygon(0, 10, 10 + 10j, 10j)
+
+
+def place_of(error: OutlineError) -> complex:
+    match = re.search(r"at \(([-\d.e]+), ([-\d.e]+)\)", str(error))
+    assert match is not None
+    return complex(float(match.group(1)), float(match.group(2)))
+
+
+def refused(curves: list[Curve], *expected: complex, code: str = "crossing") -> None:
+    with pytest.raises(OutlineError) as error:
+        assemble(curves)
+    assert error.value.findings[0].code == code
+    if expected:
+        at = [complex(*f.at) for f in error.value.findings if f.at is not None]
+        for z in expected:
+            assert min(abs(z - w) for w in at) < 1e-6
+        assert min(abs(z - place_of(error.value)) for z in expected) < 1e-6 or len(at) > 1
+
+
+def test_bow_tie() -> None:
+    refused(polygon(0, 10 + 10j, 10, 10j), 5 + 5j)
+    refused(polygon(0, 20 + 20j, 20, 10j), complex(20 / 3, 20 / 3))
+
+
+def test_line_through_the_bulge_of_an_arc_whose_chord_it_misses() -> None:
+    """The half disc above y = 10 and a box that enters its crown only."""
+    house = curves_of([[(0, 0, 10, 0, 0), (10, 0, 10, 10, 0), (10, 10, 0, 10, 1.0), (0, 10, 0, 0, 0)]])
+    x = 5 - math.sqrt(25 - 16)
+    refused(house + polygon(-5 + 14j, 4 + 14j, 4 + 20j, -5 + 20j), complex(x, 14))
+
+
+def test_arcs_that_keep_clear_although_their_chords_cross() -> None:
+    """An inward bulge makes room for a disc that the chord would cut."""
+    notch = curves_of([[(0, 0, 10, 0, 0), (10, 0, 10, 10, 0), (10, 10, 0, 10, -0.8), (0, 10, 0, 0, 0)]])
+    outline = assemble([*notch, circle(5 + 9.5j, 1.5)])
+    assert len(outline.regions) == 2
+
+
+@pytest.mark.parametrize("distance", [3.5, 5.0, 6.9])
+def test_circles_that_cross(distance: float) -> None:
+    a, b = 5.0, 2.0
+    x = (distance**2 + a**2 - b**2) / (2 * distance)
+    y = math.sqrt(a**2 - x**2)
+    with pytest.raises(OutlineError) as error:
+        assemble([circle(0, a), circle(distance + 0j, b)])
+    at = place_of(error.value)
+    assert complex(at.real, abs(at.imag)) == pytest.approx(complex(x, y), abs=1e-6)
+
+
+@pytest.mark.parametrize("distance", [7.0, 3.0, 7.0 + 1e-10])
+def test_circles_that_touch_from_outside_and_inside(distance: float) -> None:
+    """The place of a touch is known to the root of the tolerance only."""
+    with pytest.raises(OutlineError) as error:
+        assemble([circle(0, 5.0), circle(distance + 0j, 2.0)])
+    assert abs(place_of(error.value) - 5) < 1e-3
+
+
+@pytest.mark.parametrize("distance", [7.0 + 1e-6, 3.0 - 1e-6])
+def test_circles_with_a_hair_between_them_are_left_alone(distance: float) -> None:
+    assert assemble([circle(0, 5.0), circle(distance + 0j, 2.0)]).regions
+
+
+def test_void_that_touches_the_outer_boundary_in_a_point() -> None:
+    with pytest.raises(OutlineError) as error:
+        assemble([*SQUARE, circle(3 + 5j, 3.0)])
+    assert abs(place_of(error.value) - 5j) < 1e-3
+
+
+def test_vertex_on_another_edge() -> None:
+    refused(SQUARE + polygon(10 + 5j, 15 + 3j, 15 + 7j), 10 + 5j)
+
+
+def test_spike_that_runs_back_over_itself() -> None:
+    points = [0, 10, 10 + 5j, 15 + 5j, 10 + 5j, 10 + 10j, 10j]
+    with pytest.raises(OutlineError):
+        assemble(polygon(*map(complex, points)))
+
+
+def test_cusp_of_a_fillet_spandrel_is_accepted() -> None:
+    """Its arc leaves both sides at the angle 0: a true corner, not a crossing."""
+    for r in (1e-3, 1.0, 12.0, 1e4):
+        outline = assemble(curves_of(spandrel(r)))
+        assert outline.regions[0].area == pytest.approx((1 - math.pi / 4) * r**2, rel=1e-12)
+
+
+@pytest.mark.parametrize("digits", [3, 4, 6, 9])
+def test_tangent_fillets_whose_ends_were_rounded_are_accepted(digits: int) -> None:
+    """As a file with few decimals gives them: line and arc then cross again, by less than the rounding, near the
+    joint."""
+    for contours in (i_section(200, 100, 5.6, 8.5, 12), lipped_channel(200, 75, 20, 1.5, 3)):
+        rounded = [
+            [(round(a, digits), round(b, digits), round(c, digits), round(d, digits), bulge)
+             for a, b, c, d, bulge in contour] for contour in contours
+        ]  # fmt: skip
+        area = assemble(curves_of(rounded)).regions[0].area
+        assert area == pytest.approx(assemble(curves_of(contours)).regions[0].area, rel=10.0 ** (2 - digits))
+
+
+def test_comb_of_a_thousand_teeth_and_its_crossing_twin() -> None:
+    points = [0j]
+    for k in range(1000):
+        points += [complex(k + 0.25, 0), complex(k + 0.25, 5), complex(k + 0.75, 5), complex(k + 0.75, 0)]
+    points += [1000 + 0j, 1000 - 2j, -2j]
+    assert assemble(polygon(*points)).regions[0].area == pytest.approx(2000 + 2500)
+    points[2002] += 0.6
+    with pytest.raises(OutlineError):
+        assemble(polygon(*points))
+
+
+def random_loop(chance: random.Random) -> Loop:
+    """A polygon around a point, some corners rounded, some sides bulged."""
+    n = chance.randint(3, 7)
+    at = complex(chance.uniform(-3, 3), chance.uniform(-3, 3))
+    turns = sorted(chance.uniform(0, 2 * math.pi) for _ in range(n))
+    points = [at + chance.uniform(1.5, 4) * complex(math.cos(t), math.sin(t)) for t in turns]
+    contour = fillet_polygon([(z.real, z.imag, 0.0) for z in points])
+    bulged = [(*piece[:4], chance.choice([0.0, 0.0, 0.3, -0.2])) for piece in contour]
+    return Loop(tuple(curves_of([bulged])))
+
+
+@pytest.mark.parametrize("seed", range(6))
+def test_random_pairs_against_fine_chords(seed: int) -> None:
+    """shapely's intersection of rings of 200 chords an arc; pairs too near for the chords to tell are left out."""
+    chance = random.Random(100 + seed)
+    decided = crossing = 0
+    for _ in range(60):
+        loops = [random_loop(chance), random_loop(chance)]
+        rings = []
+        for loop in loops:
+            points = [z for curve in loop.curves for z in curve.points(np.linspace(0, 1, 200, endpoint=False))]
+            rings.append(shapely.LinearRing([(z.real, z.imag) for z in points]))
+        if not all(shapely.Polygon(ring).is_valid for ring in rings):
+            continue
+        meets = rings[0].intersects(rings[1])
+        if not meets and rings[0].distance(rings[1]) < 1e-3:
+            continue
+        if meets and shapely.Polygon(rings[0]).intersection(shapely.Polygon(rings[1])).area < 1e-3:
+            continue
+        decided += 1
+        try:
+            refuse_crossings(loops)
+            found = False
+        except OutlineError:
+            found = True
+        crossing += found
+        assert found == meets
+    assert decided > 20
+    assert crossing > 5
+
+
+def test_eighteen_thousand_shuffled_pieces() -> None:
+    pieces: list[Curve] = []
+    for k in range(2000):
+        at = 30.0 * complex(k % 45, k // 45)
+        slot = [(0, 2, 2, 0, 0.4), (2, 0, 18, 0, 0.0), (18, 0, 20, 2, 0.4), (20, 2, 20, 18, 0.0), (20, 18, 18, 20, 0.4),
+                (18, 20, 10, 20, 0.0), (10, 20, 2, 20, 0.0), (2, 20, 0, 18, 0.4), (0, 18, 0, 2, 0.0)]  # fmt: skip
+        pieces += [curve.moved(1.0, at) for curve in curves_of([slot])]
+    random.Random(3).shuffle(pieces)
+    outline = assemble(pieces)
+    assert len(outline.regions) == 2000
+    assert outline.joins == ()

@@ -1,0 +1,209 @@
+"""Loose curves → closed loops: which ends are joined, what is reported, what is refused and with which words."""
+
+from __future__ import annotations
+
+import math
+import random
+import re
+
+import pytest
+from build import Piece, curves_of
+from hypothesis import given, settings
+from hypothesis import strategies as st
+from outlines import i_section, lipped_channel, split_tube
+
+from edgetally import OutlineError
+from edgetally.curves import Arc, Curve, Line, Source
+from edgetally.outline.assembly import assemble
+from edgetally.outline.joining import close_loops
+from edgetally.outline.records import Outline
+
+
+def lines(points: list[complex]) -> list[Curve]:
+    """The closed polygon as loose lines with handles 1, 2, …"""
+    pairs = zip(points, [*points[1:], points[0]], strict=True)
+    return [Line(a, b, Source("LINE", f"{k + 1:X}", "0")) for k, (a, b) in enumerate(pairs)]
+
+
+SQUARE = [0j, 10 + 0j, 10 + 10j, 10j]
+
+
+def refused(curves: list[Curve], **options: object) -> OutlineError:
+    with pytest.raises(OutlineError) as error:
+        assemble(curves, **options)  # type: ignore[arg-type]
+    assert error.value.findings
+    return error.value
+
+
+def area(outline: Outline) -> float:
+    return sum(region.area for region in outline.regions)
+
+
+@settings(max_examples=40)
+@given(st.integers(0, 10**6), st.sampled_from([i_section(200, 100, 5.6, 8.5, 12), lipped_channel(200, 75, 20, 1.5, 3)]))
+def test_shuffled_and_reversed_pieces_close_to_one_loop(seed: int, contours: list[list[Piece]]) -> None:
+    pieces = curves_of(contours)
+    chance = random.Random(seed)
+    mixed = [p.reversed() if chance.random() < 0.5 else p for p in pieces]
+    chance.shuffle(mixed)
+    outline = assemble(mixed)
+    assert area(outline) == pytest.approx(area(assemble(pieces)), rel=1e-13)
+    assert outline.joins == ()
+    assert len(outline.regions[0].outer.curves) == len(pieces)
+
+
+def test_each_join_is_reported_with_gap_place_and_both_sources() -> None:
+    square = lines(SQUARE)
+    square[1] = Line(10 + 0.003j, 10 + 10j, square[1].source)
+    square[2] = Line(10 + 10.004j, 10.002j, square[2].source)
+    joins = sorted(assemble(square).joins, key=lambda join: join.gap)
+    assert [join.gap for join in joins] == pytest.approx([0.002, 0.003, 0.004])
+    assert {tuple(sorted(s.handle for s in join.between)) for join in joins} == {("3", "4"), ("1", "2"), ("2", "3")}
+    assert joins[1].at == pytest.approx(10 + 0.0015j)
+
+
+def test_gaps_of_rounding_are_no_joins() -> None:
+    square = lines([z + 1e4 for z in SQUARE])
+    square[0] = Line(square[0].start, square[0].end + 5e-12, square[0].source)
+    assert assemble(square).joins == ()
+
+
+def test_the_nearest_ends_are_joined_first() -> None:
+    """Two corners 0.006 apart, each with its own gap: no join goes across."""
+    left = [0j, 10 + 0j, 10 + 10j, 10j]
+    right = [z + 10.006 for z in left]
+    pieces = lines(left) + lines(right)
+    pieces[0] = Line(0j, 9.999, pieces[0].source)
+    outline = assemble(pieces)
+    assert len(outline.regions) == 2
+    assert [join.gap for join in outline.joins] == pytest.approx([0.001])
+
+
+def test_open_outline_names_both_ends_and_the_option_that_closes_it() -> None:
+    square = lines(SQUARE)
+    square[3] = Line(10j, 0.034j, square[3].source)
+    error = refused(square)
+    message = str(error)
+    assert "gap 0.034 mm" in message
+    assert "between LINE #1 and LINE #4" in message
+    assert "joined up to 0.01 mm" in message
+    assert error.findings[0].code == "open-chain"
+    assert set(error.findings[0].handles) == {"1", "4"}
+    option = re.search(r"pass --join-gap ([\d.]+)mm", message)
+    assert option is not None
+    closed = assemble(square, gap=float(option.group(1)))
+    assert area(closed) == pytest.approx(100, rel=1e-12)  # the lines meet where they cross, at the corner
+
+
+def test_a_gap_that_is_too_wide_has_no_option() -> None:
+    square = lines(SQUARE)
+    square[3] = Line(10j, 0.2j, square[3].source)
+    assert "--join-gap" not in str(refused(square))
+
+
+def test_gap_in_an_inch_drawing_is_measured_in_inches() -> None:
+    square = lines(SQUARE)
+    square[3] = Line(10j, 0.0003j, square[3].source)  # 0.0076 mm
+    assert assemble(square, unit="in").joins[0].gap == pytest.approx(0.0003)
+    square[3] = Line(10j, 0.0005j, square[3].source)  # 0.0127 mm
+    assert "pass --join-gap 0.013mm" in str(refused(square, unit="in"))
+
+
+@pytest.mark.parametrize("more", [1, 2])
+def test_three_and_more_ends_at_a_point(more: int) -> None:
+    spokes = [Line(10 + 10j, 20 + 7j * k, Source("LINE", f"A{k}", "0")) for k in range(more)]
+    error = refused(lines(SQUARE) + spokes)
+    assert error.findings[0].code == "branch"
+    assert f"{2 + more} curve ends meet at one point at (10, 10)" in str(error)
+    assert {"2", "3", "A0"} <= set(error.findings[0].handles)
+
+
+def test_a_third_end_within_the_gap() -> None:
+    error = refused([*lines(SQUARE), Line(10.004 + 10j, 20 + 10j, Source("LINE", "A", "0"))])
+    assert error.findings[0].code == "branch"
+    assert "within the join gap of 0.01 mm" in str(error)
+
+
+def test_a_stray_line_is_named() -> None:
+    error = refused([*lines(SQUARE), Line(30, 40, Source("LINE", "A", "0"))])
+    assert "LINE #A from (30, 0) to (40, 0) meets nothing at its ends" in str(error)
+
+
+def test_a_join_wider_than_a_tenth_of_its_neighbour() -> None:
+    points = [0j, 10 + 0j, 10 + 10j, 10j, 0.05j]
+    pieces = lines(points)
+    pieces[4] = Line(0.05j, 0.006j, pieces[4].source)
+    error = refused(pieces)
+    assert error.findings[0].code == "gap-too-wide"
+    assert "wider than a tenth" in str(error)
+
+
+@pytest.mark.parametrize("size", [1e-1, 1e-3, 1e-6, 1e-9, 1e-11])
+def test_tiny_pieces_are_harmless(size: float) -> None:
+    """A corner cut off by a piece down to 1e-12 of the drawing's size."""
+    points = [0j, 10 - size + 0j, 10 + 1j * size, 10 + 10j, 10j]
+    outline = assemble(lines(points))
+    assert area(outline) == pytest.approx(100 - size**2 / 2, rel=1e-12)
+
+
+def test_pieces_of_rounding_are_left_out_and_said() -> None:
+    points = [0j, 10 + 0j, 10 + 1e-15j, 10 + 10j, 10j]
+    outline = assemble(lines(points))
+    assert area(outline) == pytest.approx(100, rel=1e-15)
+    assert [(f.code, f.severity) for f in outline.findings] == [("tiny-curve-removed", "note")]
+
+
+def test_one_arc_that_all_but_closes_on_itself_is_a_loop_across_its_gap() -> None:
+    turn = 2 * math.pi - 0.001
+    outline = assemble([Arc.from_centre(0, 5, 0.3, turn, Source("ARC", "1", "0"))])
+    assert outline.joins[0].gap == pytest.approx(0.005, rel=1e-3)
+    assert area(outline) == pytest.approx(25 * math.pi, rel=1e-4)
+
+
+def test_a_slit_tube_keeps_its_slit() -> None:
+    outline = assemble(curves_of(split_tube(50, 4, 0.02)))
+    assert len(outline.regions[0].voids) == 0
+    assert area(outline) == pytest.approx(0.5 * (52**2 - 48**2) * (2 * math.pi - 0.02), rel=1e-13)
+
+
+def test_a_straight_piece_gives_way_to_an_arc() -> None:
+    bend = Arc.from_centre(0, 5, 0.0, math.pi, Source("ARC", "1", "0"))
+    outline = assemble([bend, Line(-5 + 0.003j, 5.002 + 0.001j, Source("LINE", "2", "0"))])
+    arc = next(c for c in outline.regions[0].outer.curves if isinstance(c, Arc))
+    assert arc.radius == 5.0
+    assert abs(arc.centre) < 1e-15
+
+
+def test_two_arcs_meet_half_way_and_keep_their_turn() -> None:
+    first = Arc.from_centre(0, 5, 0.0, math.pi, Source("ARC", "1", "0"))
+    second = Arc.from_centre(0.002j, 5, math.pi, math.pi, Source("ARC", "2", "0"))
+    loop = assemble([first, second]).regions[0].outer
+    assert {abs(c.sweep) for c in loop.curves if isinstance(c, Arc)} == {math.pi}
+    assert loop.area == pytest.approx(25 * math.pi, rel=1e-3)
+
+
+@settings(max_examples=60)
+@given(st.floats(1e-4, 9e-3), st.floats(0, 2 * math.pi), st.integers(0, 3))
+def test_swept_area_bounds_what_the_join_can_have_done(gap: float, direction: float, corner: int) -> None:
+    """Against the true corner, and against moving either end onto the other."""
+    square = lines(SQUARE)
+    moved = square[corner]
+    off = complex(gap * math.cos(direction), gap * math.sin(direction))
+    square[corner] = Line(moved.start + off, moved.end, moved.source)
+    outline = assemble(square)
+    bound = sum(join.swept for join in outline.joins)
+    assert abs(area(outline) - 100) <= bound * (1 + 1e-9)
+    other = lines([z + off if k == corner else z for k, z in enumerate(SQUARE)])
+    assert abs(area(outline) - area(assemble(other))) <= bound * (1 + 1e-9)
+
+
+def test_every_curve_is_used_exactly_once() -> None:
+    pieces = curves_of(i_section(200, 100, 5.6, 8.5, 12)) + lines([z + 500 for z in SQUARE])
+    loops, _ = close_loops(pieces, 0.01, "mm")
+    assert sorted(len(loop.curves) for loop in loops) == [4, 16]
+
+
+def test_no_curve_that_encloses_anything() -> None:
+    refused([Line(0, 1), Line(1, 2), Line(2, 0)])
+    with pytest.raises(OutlineError, match="no curve"):
+        assemble([])

@@ -1,0 +1,102 @@
+"""Torsion and flexure by finite elements (scikit-fem), for comparison: the same problems by a route that shares nothing."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import NamedTuple
+
+import numpy as np
+import skfem as fem
+from scipy.sparse.linalg import splu
+from skfem.helpers import dot, grad
+
+
+class ByElements(NamedTuple):
+    """What the elements give; shear compliance F at ν in the mesh's axes."""
+
+    torsion_constant: float
+    warping_constant: float
+    shear_centre: complex
+    compliance: np.ndarray
+    unknowns: int
+
+
+def by_elements(mesh: fem.Mesh, element: fem.Element, poisson: float = 0.0) -> ByElements:
+    """Solve on a mesh of triangles, weak forms of the equations in `edgetally.section.torsion` and `shear`."""
+    basis = fem.Basis(mesh, element, intorder=2 * element.maxdeg + 2)
+    x, y = np.asarray(basis.global_coordinates())
+    dx = basis.dx
+    area = dx.sum()
+    cx, cy = (x * dx).sum() / area, (y * dx).sum() / area
+    x, y = x - cx, y - cy
+    second_x, second_y, product = (y * y * dx).sum(), (x * x * dx).sum(), (x * y * dx).sum()
+
+    stiffness = fem.BilinearForm(lambda u, v, w: dot(grad(u), grad(v))).assemble(basis).tocsc()
+    c = poisson / (2 * (1 + poisson))
+    inverse = np.linalg.inv([[second_y, product], [product, second_x]])
+    loads = [basis_load(basis, lambda v, w: (w.x[1] - cy) * grad(v)[0] - (w.x[0] - cx) * grad(v)[1])]
+    for alpha, beta in inverse:
+
+        def flexure(v: object, w: object, a: float = alpha, b: float = beta) -> np.ndarray:
+            p, q = w.x[0] - cx, w.x[1] - cy
+            return (a * p + b * q) * v - c * (a * q * q * grad(v)[0] + b * p * p * grad(v)[1])
+
+        loads.append(basis_load(basis, flexure))
+    free = np.arange(1, basis.N)
+    factor = splu(stiffness[free][:, free])
+    fields = np.zeros((3, basis.N))
+    for field, load in zip(fields, loads, strict=True):
+        field[free] = factor.solve(load[free])
+
+    torsion = second_x + second_y - fields[0] @ stiffness @ fields[0]
+    omega = np.asarray(basis.interpolate(fields[0]))
+    ax, ay = (x * omega * dx).sum(), (y * omega * dx).sum()
+    ys, xs = np.linalg.solve([[-second_y, product], [-product, second_x]], [-ax, -ay])
+    about = omega - ys * x + xs * y
+    about = about - (about * dx).sum() / area
+    stress = []
+    for field, (alpha, beta) in zip(fields[1:], inverse, strict=True):
+        slope = basis.interpolate(field).grad
+        stress.append((slope[0] + c * alpha * y * y, slope[1] + c * beta * x * x))
+    compliance = np.array([[((s[0] * t[0] + s[1] * t[1]) * dx).sum() for t in stress] for s in stress])
+    warping = float((about**2 * dx).sum())
+    return ByElements(float(torsion), warping, complex(xs + cx, ys + cy), compliance, basis.N)
+
+
+def basis_load(basis: fem.Basis, form: Callable) -> np.ndarray:
+    return fem.LinearForm(form).assemble(basis)
+
+
+def graded_lines(marks: list[float], levels: int, ratio: float = 0.3) -> np.ndarray:
+    """Coordinates between the marks that crowd geometrically towards each of them."""
+    lines = {*marks}
+    for a, b in zip(marks[:-1], marks[1:], strict=True):
+        middle = 0.5 * (a + b)
+        lines.add(middle)
+        for k in range(1, levels + 1):
+            step = (middle - a) * ratio**k
+            lines |= {a + step, b - step}
+    return np.array(sorted(lines))
+
+
+def blocks(
+    xs: list[float], ys: list[float], solid: Callable[[np.ndarray, np.ndarray], np.ndarray], levels: int
+) -> fem.Mesh:
+    """A mesh of the rectangles between the marks in which `solid` holds, graded towards every mark."""
+    mesh = fem.MeshTri.init_tensor(graded_lines(xs, levels), graded_lines(ys, levels))
+    x, y = mesh.p[:, mesh.t].mean(axis=1)
+    return mesh.restrict(np.flatnonzero(solid(x, y)))
+
+
+def star(radius: Callable[[np.ndarray], np.ndarray], rings: int) -> fem.Mesh:
+    """A mesh with sides of degree 2 of the region r ≤ radius(φ) about the origin."""
+    mesh = fem.MeshTri2.init_circle(rings)
+    points = mesh.doflocs.copy()
+    # the circle's mesh is of straight triangles: its nodes are drawn out to rings first
+    angle, size = np.arctan2(points[1], points[0]), np.hypot(*points)
+    boundary = mesh.boundary_facets()
+    on = np.zeros(points.shape[1], dtype=bool)
+    on[mesh.dofs.get_facet_dofs(boundary).flatten()] = True
+    size[on] = 1.0
+    out = size * radius(angle)
+    return fem.MeshTri2(np.vstack([out * np.cos(angle), out * np.sin(angle)]), mesh.t)
