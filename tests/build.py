@@ -3,11 +3,18 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from functools import cache, partial
 
+import edgetally
 from edgetally.curves import Arc, Curve, Line
 from edgetally.outline.assembly import assemble
 from edgetally.section.area import area_properties
 from edgetally.section.record import Property, Section, input_rounding
+
+# for tests of reading and assembling, which have nothing to do with torsion
+analyse_area = partial(edgetally.analyse, torsion=False)
+# for tests that look at one result from many sides; an analysis is never changed
+analyse_once = cache(edgetally.analyse)
 
 Piece = tuple[float, float, float, float, float]
 

@@ -13,9 +13,10 @@ from typing import Any
 import ezdxf
 import pytest
 import shapely
+from build import analyse_area as analyse
 from ezdxf.path import make_path
 
-from edgetally import EdgetallyError, analyse
+from edgetally import EdgetallyError
 
 FOLDER = Path(os.environ.get("EDGETALLY_DRAWINGS", "")) / "sections"
 

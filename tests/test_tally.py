@@ -15,7 +15,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 import edgetally
-from edgetally import analyse
+from build import analyse_once as analyse
 from edgetally.output.numbers import digits_of, number_text, value_text
 from edgetally.output.symbols import KEYS, name_of, symbol_of
 from edgetally.section.kinds import unit_of

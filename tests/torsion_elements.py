@@ -1,8 +1,10 @@
-"""Torsion and flexure by finite elements (scikit-fem), for comparison: the same problems by a route that shares nothing."""
+"""Torsion and flexure by finite elements (scikit-fem): the same problems by a route that shares nothing."""
 
 from __future__ import annotations
 
 from collections.abc import Callable
+from itertools import pairwise
+from math import ceil
 from typing import NamedTuple
 
 import numpy as np
@@ -70,7 +72,7 @@ def basis_load(basis: fem.Basis, form: Callable) -> np.ndarray:
 def graded_lines(marks: list[float], levels: int, ratio: float = 0.3) -> np.ndarray:
     """Coordinates between the marks that crowd geometrically towards each of them."""
     lines = {*marks}
-    for a, b in zip(marks[:-1], marks[1:], strict=True):
+    for a, b in pairwise(marks):
         middle = 0.5 * (a + b)
         lines.add(middle)
         for k in range(1, levels + 1):
@@ -86,6 +88,38 @@ def blocks(
     mesh = fem.MeshTri.init_tensor(graded_lines(xs, levels), graded_lines(ys, levels))
     x, y = mesh.p[:, mesh.t].mean(axis=1)
     return mesh.restrict(np.flatnonzero(solid(x, y)))
+
+
+def graded_to_corners(
+    xs: list[float],
+    ys: list[float],
+    solid: Callable[[np.ndarray, np.ndarray], np.ndarray],
+    size: float,
+    levels: int,
+) -> fem.Mesh:
+    """A mesh of well-shaped triangles no longer than about `size`, halved `levels` times towards every corner."""
+
+    def lines(marks: list[float]) -> np.ndarray:
+        parts = [np.linspace(a, b, 1 + ceil((b - a) / size))[:-1] for a, b in pairwise(marks)]
+        return np.append(np.concatenate(parts), marks[-1])
+
+    mesh = fem.MeshTri.init_tensor(lines(xs), lines(ys))
+    x, y = mesh.p[:, mesh.t].mean(axis=1)
+    mesh = mesh.restrict(np.flatnonzero(solid(x, y)))
+    corners = np.array([[a, b] for a in xs for b in ys if 0 < _quadrants(solid, a, b) != 2]).T
+    for level in range(levels):
+        middle = mesh.p[:, mesh.t].mean(axis=1)
+        apart = np.hypot(*(middle[:, :, None] - corners[:, None, :])).min(axis=1)
+        mesh = mesh.refined(np.flatnonzero(apart < 1.5 * size * 0.5**level))
+    return mesh
+
+
+def _quadrants(solid: Callable[[np.ndarray, np.ndarray], np.ndarray], x: float, y: float) -> int:
+    """Count the quadrants around a point that hold material, 0 for four."""
+    step = 1e-6
+    p, q = x + step * np.array([1, -1, 1, -1]), y + step * np.array([1, 1, -1, -1])
+    around = solid(p, q)
+    return int(around.sum()) % 4
 
 
 def star(radius: Callable[[np.ndarray], np.ndarray], rings: int) -> fem.Mesh:

@@ -21,7 +21,7 @@ from edgetally.outline.records import Join, Outline, Region
 from edgetally.outline.words import at, handles, length_text, place
 from edgetally.section.accuracy import WARPING_SCALE
 from edgetally.section.area import AreaResult, area_properties
-from edgetally.section.connected import ConnectedResult, connected_properties
+from edgetally.section.connected import NOT_ASKED, ConnectedResult, connected_properties
 from edgetally.section.record import Property, Section, input_rounding
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
 
@@ -157,6 +157,7 @@ def analyse(
     out_units: str | None = None,
     density: float | str | None = None,
     poisson: float = 0.3,
+    torsion: bool = True,
     name: str | None = None,
 ) -> Analysis:
     """Read a drawing and measure the section, or sections, on a layer of it.
@@ -172,6 +173,7 @@ def analyse(
     out_units : `mm`, `cm`, `m` or `in`, the unit of the results; the drawing's own without it.
     density : kg/m³, or `steel`, `aluminium`, `stainless`; adds the mass per length.
     poisson : Poisson's ratio for the shear areas, from 0 to 0.5.
+    torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
     name : the name that the result gives for the file, where `path` is a copy of it.
 
     Raises UsageError, DrawingError or OutlineError, each with the message that the command prints.
@@ -212,7 +214,11 @@ def analyse(
     out_unit = out_units or unit
     sections = tuple(
         _measure(
-            Section(section_name, regions, unit, input_rounding(regions) * scale), scale, out_unit, kg_per_m3, poisson
+            Section(section_name, regions, unit, input_rounding(regions) * scale),
+            scale,
+            out_unit,
+            kg_per_m3,
+            poisson if torsion else None,
         )
         for section_name, regions in chosen
     )
@@ -222,10 +228,13 @@ def analyse(
     return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson)
 
 
-def _measure(drawn: Section, scale: float, out_unit: str, density: float | None, poisson: float) -> SectionResult:
+def _measure(
+    drawn: Section, scale: float, out_unit: str, density: float | None, poisson: float | None
+) -> SectionResult:
+    """Measure a section as drawn; torsion and shear only where Poisson's ratio is given."""
     section = Section(drawn.name, tuple(r.scaled(scale) for r in drawn.regions), drawn.unit, drawn.input_rounding)
     result = area_properties(section, density=density)
-    connected = connected_properties(section, poisson=poisson)
+    connected = NOT_ASKED if poisson is None else connected_properties(section, poisson=poisson)
     both = result.properties | connected.properties
     properties = {key: p.converted(section.unit, out_unit) for key, p in both.items()}
     findings = result.findings + connected.findings

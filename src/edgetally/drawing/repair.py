@@ -54,6 +54,7 @@ NOT_DRAWN = frozenset(
 )
 
 _HANDLE = re.compile(r"\s*[0-9A-Fa-f]{1,16}\s*")
+_HANDLES = re.compile(r"(?:[1-9A-F][0-9A-F]{0,15} )*")
 
 
 def read_repaired(stream: TagStream) -> Structure:
@@ -102,6 +103,9 @@ def _tags(structure: Structure, record: Record) -> list[tuple[int, Any]]:
 def _check_names(structure: Structure) -> None:
     """Give the kinds of entities in capitals, as DXF has them."""
     lower: Counter[str] = Counter()
+    kinds = {record.kind for name in ("BLOCKS", "ENTITIES") for record in structure.sections.get(name, ())}
+    if all(map(str.isupper, kinds)):
+        return
     for name in ("BLOCKS", "ENTITIES"):
         for record in structure.sections.get(name, ()):
             if not record.kind.isupper() and record.kind.upper() in KNOWN:
@@ -127,21 +131,23 @@ def _check_entities(structure: Structure) -> None:
             if record.kind in NOT_DRAWN and not (name == "BLOCKS" and record.kind in ("BLOCK", "ENDBLK")):
                 raise damaged(stream.name, f"{record.kind} at {structure.where(record)} stands among the entities")
             own = _own(structure, record)
-            for code, what in NEEDED.get(record.kind, ()):
-                if own.count(code) != 1:
-                    who, handle = describe(structure, record)
-                    many = "more than one value" if code in own else "no value"
-                    text = f"{who} at {structure.where(record)} has {many} of its {what} (group code {code})"
-                    raise damaged(stream.name, text, handle)
-            for said_by, code, what in COUNTED.get(record.kind, ()):
-                _check_count(structure, record, own, said_by, code, what)
-            if record.kind in MARKED and not _is_marked(structure, record, own):
-                _mark(structure, record)
-                unmarked[record.kind] += 1
+            if record.kind in NEEDED:
+                for code, what in NEEDED[record.kind]:
+                    if own.count(code) != 1:
+                        who, handle = describe(structure, record)
+                        many = "more than one value" if code in own else "no value"
+                        text = f"{who} at {structure.where(record)} has {many} of its {what} (group code {code})"
+                        raise damaged(stream.name, text, handle)
+            elif record.kind in MARKED:
+                for said_by, code, what in COUNTED.get(record.kind, ()):
+                    _check_count(structure, record, own, said_by, code, what)
+                if not _is_marked(structure, record):
+                    _mark(structure, record)
+                    unmarked[record.kind] += 1
             if record.tags is None and 8 in own:
-                layers.add(str(stream.values[record.start + own.index(8)]))
+                layers.add(stream.values[record.start + own.index(8)])
             if record.tags is None and 6 in own:
-                line_types.add(str(stream.values[record.start + own.index(6)]))
+                line_types.add(stream.values[record.start + own.index(6)])
     if unmarked:
         structure.changed = True
         listed = ", ".join(f"{count} x {kind}" for kind, count in unmarked.items())
@@ -161,7 +167,7 @@ def _check_count(structure: Structure, record: Record, own: list[int], said_by: 
         structure.findings.append(repaired(text, handles=(handle,) if handle else ()))
 
 
-def _is_marked(structure: Structure, record: Record, own: list[int]) -> bool:
+def _is_marked(structure: Structure, record: Record) -> bool:
     markers = [str(value) for code, value in _tags(structure, record) if code == 100]
     return markers == ["AcDbEntity", MARKED[record.kind]]
 
@@ -198,6 +204,9 @@ def _check_table(structure: Structure, table: str, used: set[str], what: str, al
 def _check_handles(structure: Structure) -> None:
     """Give a new handle where one is used twice or is none; table entries and objects keep theirs."""
     stream = structure.stream
+    handles = [str(value) for code, value in zip(stream.codes, stream.values, strict=True) if code in (5, 105)]
+    if len(set(handles)) == len(handles) and _HANDLES.fullmatch(" ".join([*handles, ""])):
+        return  # as in every sound file; the rest looks at them one by one
     seen: set[str] = set()
     twice: list[Record] = []
     none: list[Record] = []

@@ -30,6 +30,9 @@ class ConnectedResult:
     findings: tuple[Finding, ...]
 
 
+NOT_ASKED = ConnectedResult({}, None, ())
+
+
 def connected_properties(section: Section, *, poisson: float) -> ConnectedResult:
     """Solve torsion and shear of a section; `poisson` matters for the shear areas only.
 
