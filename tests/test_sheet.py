@@ -209,7 +209,7 @@ def test_many_findings_flow_to_further_pages_in_full(tmp_path: Path) -> None:
                 a, b = corners[j], corners[(j + 1) % 4]
                 space.add_line(a, (b[0] + 0.003, b[1]), dxfattribs={"layer": "OUTLINE"})
 
-    analysis = analyse(drawing(tmp_path, draw), layer="OUTLINE", select="together")
+    analysis = analyse(drawing(tmp_path, draw), layer="OUTLINE", select="together", torsion=False)
     assert len(analysis.outline.joins) == 200
     pdf = sheet_pdf(analysis)
     reader = pypdf.PdfReader(io.BytesIO(pdf))
@@ -235,8 +235,9 @@ def test_the_torsion_page_has_numbers_errors_and_the_warping(tmp_path: Path) -> 
     text = re.sub(r"\s+", " ", reader.pages[-1].extract_text())
     solution = analysis.sections[0].connected.solution
     assert solution is not None
-    for words in ("torsion constant 921.411 mm⁴", "relative error 4 × 10⁻⁷", "shear area along axis 1", "ν = 0.3"):
+    for words in ("torsion constant 921.41", "shear area along axis 1", "ν = 0.3"):
         assert words in text
+    assert len(re.findall(r"relative error \d × 10⁻[⁶⁷⁸⁹]", text)) >= 6
     # bands of both signs are there, and no more of them than the outline has pieces, or nearly
     filled = sum(1 for _, operator, colour in operations(reader.pages[-1]) if operator in (b"B*", b"b*") and colour)
     assert 8 < filled < 80

@@ -192,8 +192,9 @@ def analyse(
             "outline in the drawing"
         )
     kg_per_m3 = _density(density)
-    drawing = DrawingFile(load(path))
-    findings: list[Finding] = []
+    loaded = load(path)
+    drawing = DrawingFile(loaded)
+    findings: list[Finding] = [*loaded.findings]
     layers = _layers(drawing, layer, gap, gap_unit, units, findings)
     reading = drawing.read(layers)
     findings += reading.findings

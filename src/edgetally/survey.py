@@ -111,7 +111,7 @@ def survey(path: str | Path, *, units: str | None = None, name: str | None = Non
         drawing.hidden_layers(),
         drawing.blocks.counts(),
         usable[0] if len(usable) == 1 else None,
-        tuple(getattr(loaded, "findings", ())),
+        loaded.findings,
     )
 
 
