@@ -124,9 +124,38 @@ def test_a_third_end_within_the_gap() -> None:
     assert "within the join gap of 0.01 mm" in str(error)
 
 
-def test_a_stray_line_is_named() -> None:
-    error = refused([*lines(SQUARE), Line(30, 40, Source("LINE", "A", "0"))])
+@pytest.mark.parametrize(
+    "line", [Line(30, 40, Source("LINE", "A", "0")), Line(3 + 3j, 5 + 6j, Source("LINE", "A", "0"))]
+)
+def test_a_stray_line_is_a_warning_where_the_outline_is_closed_without_it(line: Line) -> None:
+    outline = assemble([*lines(SQUARE), line])
+    assert area(outline) == pytest.approx(100)
+    assert [(f.code, f.severity, f.handles) for f in outline.findings] == [("stray-curve", "warning", ("A",))]
+
+
+@pytest.mark.parametrize(
+    "line", [Line(5, 5 + 5j), Line(-5 + 5j, 15 + 5j), Line(5 + 5j, 10 + 7j), Line(3 + 10j, 7 + 12j)]
+)
+def test_a_line_that_meets_the_outline_is_refused_with_the_point(line: Line) -> None:
+    """T-junctions from inside and outside, and lines across."""
+    error = refused([*lines(SQUARE), Line(line.start, line.end, Source("LINE", "A", "0"))])
+    assert error.findings[0].code == "branch"
+    assert "LINE #A meets the outline at (" in str(error)
+    z = complex(*(error.findings[0].at or (0, 0)))
+    assert min(abs(z.real), abs(z.real - 10), abs(z.imag), abs(z.imag - 10)) < 1e-9
+
+
+def test_nothing_but_lines_apart_is_refused() -> None:
+    error = refused([Line(30, 40, Source("LINE", "A", "0")), Line(50, 60, Source("LINE", "B", "0"))])
     assert "LINE #A from (30, 0) to (40, 0) meets nothing at its ends" in str(error)
+
+
+def test_what_nearly_encloses_something_is_no_stray() -> None:
+    """An arc of 300° may be meant as a void: leaving it out would be a guess."""
+    error = refused([*lines(SQUARE), Arc.from_centre(5 + 5j, 2, 0.0, 5.2, Source("ARC", "A", "0"))])
+    assert error.findings[0].code == "open-chain"
+    corner = [Line(3 + 3j, 6 + 3j, Source("LINE", "A", "0")), Line(6 + 3j, 6 + 6j, Source("LINE", "B", "0"))]
+    assert refused([*lines(SQUARE), *corner]).findings[0].code == "open-chain"
 
 
 def test_a_join_wider_than_a_tenth_of_its_neighbour() -> None:
@@ -199,8 +228,9 @@ def test_swept_area_bounds_what_the_join_can_have_done(gap: float, direction: fl
 
 def test_every_curve_is_used_exactly_once() -> None:
     pieces = curves_of(i_section(200, 100, 5.6, 8.5, 12)) + lines([z + 500 for z in SQUARE])
-    loops, _ = close_loops(pieces, 0.01, "mm")
-    assert sorted(len(loop.curves) for loop in loops) == [4, 16]
+    closed = close_loops(pieces, 0.01, "mm")
+    assert sorted(len(loop.curves) for loop in closed.loops) == [4, 16]
+    assert closed.strays == []
 
 
 def test_no_curve_that_encloses_anything() -> None:

@@ -100,13 +100,26 @@ def test_compliance_turns_as_a_tensor() -> None:
     assert turned.shear_area_x.value == pytest.approx(1 / turned.shear_compliance[0, 0], rel=1e-12)
 
 
-def test_largest_stress_on_the_boundary() -> None:
-    """Rectangle at ν = 0: 3/2 of the mean; circle: (1 + 2ν)/(1 + ν) of the mean at the ends of the diameter across the
-    force (Timoshenko and Goodier, § 123)."""
+def test_largest_stress() -> None:
+    """Rectangle at ν = 0: 3/2 of the mean. Circle: (3 + 2ν)/(2(1 + ν)) of the mean at the centre (Timoshenko and Goodier,
+    § 123), where it is 4/3 all along the diameter at ν = ½ only."""
     rectangle = solve([polygon((0, 0), (2, 0), (2, 3), (0, 3))], poisson=0.0)
-    assert rectangle.shear_peak_y.stress == pytest.approx(1.5 / 6, rel=1e-8)
+    assert rectangle.shear_peak_y.stress == pytest.approx(1.5 / 6, rel=1e-6)
     assert rectangle.shear_peak_y.at.imag == pytest.approx(1.5, abs=1e-6)
     for poisson in (0.0, 0.3):
-        circle = solve([disc(2.0)], poisson=poisson)
-        assert circle.shear_peak_x.stress == pytest.approx((1 + 2 * poisson) / (1 + poisson) / (4 * pi), rel=1e-7)
-        assert abs(circle.shear_peak_x.at.real) < 1e-6
+        circle = solve([disc(2.0, 1 + 1j)], poisson=poisson)
+        mean = 1 / (4 * pi)
+        assert circle.shear_peak_x.stress == pytest.approx((3 + 2 * poisson) / (2 * (1 + poisson)) * mean, rel=1e-6)
+        assert abs(circle.shear_peak_x.at - (1 + 1j)) < 1e-3
+
+
+def test_largest_stress_of_a_beam_by_its_web() -> None:
+    """The web's mean stress at the neutral axis is V·Q/(I·t), and the peak is hardly more (Zhuravskii)."""
+    solution = solve(TABLE[3].loops)
+    h, b, web, flange, root = 300.0, 150.0, 7.1, 10.7, 15.0
+    first = b * flange * (h - flange) / 2 + web * (h / 2 - flange) ** 2 / 2
+    corner = (1 - pi / 4) * root**2 * 2
+    first += corner * (h / 2 - flange - 0.2234 * root)
+    second = (b * h**3 - (b - web) * (h - 2 * flange) ** 3) / 12 + 2 * corner * (h / 2 - flange - 0.2234 * root) ** 2
+    assert solution.shear_peak_y.stress == pytest.approx(first / (second * web), rel=2e-3)
+    assert abs(solution.shear_peak_y.at.imag) < 5

@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from edgetally.curves import Curve
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
-from edgetally.outline.crossings import refuse_crossings
+from edgetally.outline.crossings import refuse_contact, refuse_crossings
 from edgetally.outline.duplicates import without_duplicates
 from edgetally.outline.joining import DEFAULT_GAP_MM, ROUNDING, close_loops
 from edgetally.outline.nesting import nest
@@ -27,13 +27,24 @@ def assemble(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "
     """
     kept, specks = _without_specks(curves)
     cleared = without_duplicates(kept)
-    loops, joins = close_loops(cleared.curves, DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap, unit)
+    closed = close_loops(cleared.curves, DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap, unit)
+    loops = closed.loops
     if not loops:
         raise OutlineError("no curve there encloses an area")
     refuse_crossings(loops)
+    refuse_contact(closed.strays, loops)
     _refuse_flat(loops)
     regions, islands = nest(loops)
-    return Outline(tuple(regions), tuple(joins), tuple(islands), (*specks, *cleared.findings))
+    findings = [*specks, *cleared.findings, *map(_stray, closed.strays)]
+    return Outline(tuple(regions), tuple(closed.joins), tuple(islands), tuple(findings))
+
+
+def _stray(curve: Curve) -> Finding:
+    message = (
+        f"{curve.source} from {place(curve.start)} to {place(curve.end)} belongs to no outline and was left out; move "
+        "it to another layer"
+    )
+    return Finding("stray-curve", "warning", message, at(curve.start), handles((curve.source,)))
 
 
 def _without_specks(curves: Sequence[Curve]) -> tuple[list[Curve], list[Finding]]:

@@ -63,6 +63,29 @@ def refuse_crossings(loops: Sequence[Loop]) -> None:
         raise _refusal(found)
 
 
+def refuse_contact(strays: Sequence[Curve], loops: Sequence[Loop]) -> None:
+    """Raise OutlineError (`branch`) where a curve that belongs to no loop meets one: an inner line, or a T-junction."""
+    if not strays:
+        return
+    curves = [curve for loop in loops for curve in loop.curves]
+    boxes, own = Packed.of(curves).boxes, Packed.of(strays).boxes
+    touch = TOUCH * float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max())
+    grown = own + np.array([-touch, -touch, touch, touch])
+    one, other = shapely.STRtree(shapely.box(*boxes.T)).query(shapely.box(*grown.T))
+    for i, j in zip(one, other, strict=True):
+        stray, curve = strays[int(i)], curves[int(j)]
+        contacts = [z for _, _, z in intersect(stray, curve, touch)]
+        contacts += [stray.point(t0) for (t0, _), _ in overlap(stray, curve, touch)]
+        if contacts:
+            z = contacts[0]
+            message = (
+                f"{stray.source} meets the outline at {place(z)}, on {curve.source}: an outline has no inner lines and "
+                "no T-junctions; trim it, or move it to another layer"
+            )
+            sources = (stray.source, curve.source)
+            raise OutlineError(message, [Finding("branch", "error", message, at(z), handles(sources))])
+
+
 def _followers(loops: Sequence[Loop]) -> NDArray[np.intp]:
     follower: list[int] = []
     for loop in loops:

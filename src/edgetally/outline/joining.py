@@ -31,6 +31,8 @@ ROUNDING = 64 * EPS
 """Ends nearer than this times the largest coordinate differ by the rounding of their own computation."""
 SLENDER = 4.0
 """A curve whose length exceeds its chord by this factor is not turned about its ends to close a gap."""
+STRAIGHT = 1.2
+"""A stray curve is no longer than this times its chord: what is bent more may be meant as a boundary."""
 REPORTED = 12
 """So many places are listed in a refusal; the rest is counted."""
 
@@ -45,29 +47,56 @@ class _Ends:
         return f"{self.curves[end // 2].source}"
 
 
-def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> tuple[list[Loop], list[Join]]:
+@dataclass(frozen=True, eq=False)
+class Closed:
+    """The loops that were closed, the joins that it took, and single curves that have nothing to do with them."""
+
+    loops: list[Loop]
+    joins: list[Join]
+    strays: list[Curve]
+
+
+def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
     """Join `curves` end to end into closed loops.
 
-    `gap` is the join gap and `unit` the name of the unit, both of the drawing. Every curve is used exactly once.
-    Cost O(n log n). Raises OutlineError for an open chain (`open-chain`), for three or more ends at a point
-    (`branch`), and for a join wider than a tenth of a neighbour (`gap-too-wide`).
+    `gap` is the join gap and `unit` the name of the unit, both of the drawing. Every curve is used exactly once, but
+    for a stray one: a single curve, nearly straight, whose ends lie farther than 0.15 mm from every other end. Cost
+    O(n log n). Raises OutlineError for an open chain (`open-chain`), for three or more ends at a point (`branch`), and
+    for a join wider than a tenth of a neighbour (`gap-too-wide`).
     """
     loops, ends = _sort(curves)
     if not ends.curves:
-        return loops, []
+        return Closed(loops, [], [])
     pairing = _pair(ends, gap)
     if pairing.meeting:
         raise _branch(ends, pairing.meeting, "at one point")
     if pairing.crowded:
         raise _branch(ends, pairing.crowded, f"within the join gap of {length_text(gap, unit)}")
     partner = pairing.partner
-    _refuse_open(ends, partner, gap, unit)
+    strays = _strays(ends, partner, WIDEST_GAP_MM / MM_PER[unit])
+    if len(strays) == len(ends.curves) and not loops:
+        strays = []
+    _refuse_open(ends, partner, set(strays), gap, unit)
     joins: list[Join] = []
-    for chain in _walk(partner):
+    for chain in _walk(partner, strays):
         loop, joined = _weld(ends, chain, unit)
         loops.append(loop)
         joins.extend(joined)
-    return loops, joins
+    return Closed(loops, joins, [ends.curves[k] for k in strays])
+
+
+def _strays(ends: _Ends, partner: NDArray[np.intp], clear: float) -> list[int]:
+    """Return the curves that no outline can miss: both ends meet nothing within `clear`, and little is enclosed."""
+    alone = np.flatnonzero((partner[0::2] < 0) & (partner[1::2] < 0))
+    chords = np.abs(ends.z[1::2] - ends.z[0::2])
+    candidates = [k for k in map(int, alone) if ends.curves[k].length <= STRAIGHT * chords[k]]
+    if not candidates:
+        return []
+    tree = shapely.STRtree(shapely.points(ends.z.real, ends.z.imag))
+    at = np.array([end for k in candidates for end in (2 * k, 2 * k + 1)])
+    here, there = tree.query(shapely.points(ends.z[at].real, ends.z[at].imag), predicate="dwithin", distance=clear)
+    crowded = {int(at[i]) // 2 for i, j in zip(here, there, strict=True) if at[i] // 2 != j // 2}
+    return [k for k in candidates if k not in crowded]
 
 
 def closes(curves: Sequence[Curve], gap: float) -> bool:
@@ -167,8 +196,8 @@ def _branch(ends: _Ends, groups: list[list[int]], how: str) -> OutlineError:
     return _refusal(findings, len(groups))
 
 
-def _refuse_open(ends: _Ends, partner: NDArray[np.intp], gap: float, unit: str) -> None:
-    free = np.flatnonzero(partner < 0)
+def _refuse_open(ends: _Ends, partner: NDArray[np.intp], strays: set[int], gap: float, unit: str) -> None:
+    free = np.array([e for e in np.flatnonzero(partner < 0) if int(e) // 2 not in strays], dtype=np.intp)
     if not free.size:
         return
     points = shapely.points(ends.z[free].real, ends.z[free].imag)
@@ -209,9 +238,10 @@ def _refusal(findings: list[Finding], count: int) -> OutlineError:
     return OutlineError("\n".join(lines), findings)
 
 
-def _walk(partner: NDArray[np.intp]) -> list[list[int]]:
+def _walk(partner: NDArray[np.intp], strays: Sequence[int]) -> list[list[int]]:
     """Return the closed chains, each as the list of the ends at which its curves are entered."""
     seen = np.zeros(len(partner) // 2, dtype=bool)
+    seen[list(strays)] = True
     chains = []
     for first in range(0, len(partner), 2):
         entry, chain = first, []

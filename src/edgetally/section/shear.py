@@ -39,13 +39,14 @@ class Shear:
     """Flexure of the region in its own frame at one Poisson's ratio.
 
     `compliance` (2, 2) is F_ij = ∫τⁱ·τʲ dA for unit forces along the axes, 1/F_xx and 1/F_yy the shear areas; `centre`
-    the point through which forces pass that give no mean twist; `potential` (N, 2) and `rate` (N, 2) are ψ and dv/du of
-    φ for unit forces; `skew` is |F_xy − F_yx|, which should vanish.
+    the point through which forces pass that give no mean twist; `potential` (N, 2) is ψ and `gradient` (N, 2) is
+    ∂φ/∂x − i∂φ/∂y at the nodes, for unit forces; `skew` is |F_xy − F_yx|, which should vanish.
     """
 
     compliance: Floats
     centre: complex
     potential: Floats
+    gradient: Complexes
     skew: float
 
 
@@ -80,7 +81,8 @@ def shear(nodes: Nodes, harmonic: Floats, rate: Floats, moments: Floats, poisson
     m = moments
     x, y, dx, dy = nodes.z.real, nodes.z.imag, nodes.dz.real, nodes.dz.imag
     phi = harmonic[:, [0, 2]] + c * harmonic[:, [1, 3]]
-    flux = (rate[:, [0, 2]] + c * rate[:, [1, 3]]) * nodes.weight[:, None]
+    rates = rate[:, [0, 2]] + c * rate[:, [1, 3]]
+    flux = rates * nodes.weight[:, None]
     psi = phi - np.column_stack([x**3, y**3]) / 6.0
     through = c * np.column_stack([y * y * dy, -x * x * dx])
     energy = np.empty((2, 2))
@@ -93,4 +95,8 @@ def shear(nodes: Nodes, harmonic: Floats, rate: Floats, moments: Floats, poisson
     _, spin = conjugate(nodes)
     moment = (-(psi.T @ (spin * nodes.weight)) + c * np.array([-m[0, 3], m[3, 0]])) * load
     skew = abs(float(compliance[0, 1] - compliance[1, 0]))
-    return Shear(0.5 * (compliance + compliance.T), complex(moment[1], -moment[0]), psi * load, skew)
+    centre = complex(moment[1], -moment[0])
+    # d(φ + iv)/dz along the boundary
+    along = np.column_stack([nodes.rate(phi[:, k]) for k in range(2)])
+    gradient = (along + 1j * rates) / nodes.slope[:, None] * load
+    return Shear(0.5 * (compliance + compliance.T), centre, psi * load, gradient, skew)

@@ -8,6 +8,7 @@ from edgetally.curves.curve import Complexes, Floats
 from edgetally.section.boundary import Boundary
 from edgetally.section.nodes import Nodes
 from edgetally.section.panels import whole
+from edgetally.section.sight import middles
 
 # Points of a loop from which the void is looked across, and steps of the search that follows.
 LOOKS = 48
@@ -31,17 +32,7 @@ def _inside(z: Complexes, slope: Complexes) -> complex:
     a, b = z, np.roll(z, -1)
     pick = np.unique(np.linspace(0, len(z) - 1, LOOKS).astype(int))
     ray = -1j * slope[pick] / np.abs(slope[pick])
-    # where the ray z + s·ray meets each chord: both as seen from the ray's frame
-    p = (a - z[pick, None]) * ray.conj()[:, None]
-    q = (b - z[pick, None]) * ray.conj()[:, None]
-    crosses = (p.imag > 0) != (q.imag > 0)
-    fall = np.where(crosses, p.imag - q.imag, 1.0)
-    reach = p.real + (q.real - p.real) * p.imag / fall
-    apart = np.abs(np.subtract.outer(pick, np.arange(len(z))))
-    apart = np.minimum(apart, len(z) - apart)
-    reach = np.where(crosses & (reach > 0) & (apart > 1), reach, np.inf).min(axis=1)
-    seen = np.isfinite(reach)
-    starts = z[pick][seen] + 0.5 * reach[seen] * ray[seen]
+    starts = middles(z[pick], ray, a, b)
     if not starts.size:
         return complex(z.mean())
     room = _room(starts, a, b)
