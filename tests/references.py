@@ -13,6 +13,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 
 import mpmath
+
 import outlines as shape
 from outlines import Outline
 

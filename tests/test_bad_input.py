@@ -7,6 +7,7 @@ import shutil
 from pathlib import Path
 
 import pytest
+
 from command import run
 from drawings import INCH, UNSET, drawing, square
 

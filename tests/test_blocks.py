@@ -8,14 +8,14 @@ from typing import Any
 
 import numpy as np
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
+
 from build import analyse_area as analyse
 from build import measure
 from drawings import draw_contours, drawing, square
-from hypothesis import given, settings
-from hypothesis import strategies as st
-from outlines import angle
-
 from edgetally import Analysis, DrawingError
+from outlines import angle
 
 OUTLINE = {"layer": "OUTLINE"}
 SHAPE = angle(100, 60, 8, 10, 5)

@@ -7,6 +7,7 @@ from functools import cache
 from typing import Any
 
 import pytest
+
 from build import measure
 from outlines import rectangle, rotated, translated
 from references import PRINTED, REFERENCES, Reference

@@ -9,14 +9,14 @@ import re
 import numpy as np
 import pytest
 import shapely
-from build import curves_of
-from outlines import fillet_polygon, i_section, lipped_channel, spandrel
 
+from build import curves_of
 from edgetally import OutlineError
 from edgetally.curves import Arc, Curve, Line
 from edgetally.outline.assembly import assemble
 from edgetally.outline.crossings import refuse_crossings
 from edgetally.outline.records import Loop
+from outlines import fillet_polygon, i_section, lipped_channel, spandrel
 
 
 def polygon(*points: complex) -> list[Curve]:

@@ -5,10 +5,10 @@ from types import SimpleNamespace
 
 import numpy as np
 import pytest
-from curve_kinds import angles, chopped, clearance, curves, places, runs_back, shares, size_of
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
+from curve_kinds import angles, chopped, clearance, curves, places, runs_back, shares, size_of
 from edgetally.curves import Arc, Bezier, Curve, EllipticArc, Line, Packed, affine_image
 from edgetally.curves.green import moments
 from edgetally.curves.intersections import nearest

@@ -12,11 +12,11 @@ from typing import Any
 
 import ezdxf
 import pytest
-from command import run
-from drawings import drawing
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
+from command import run
+from drawings import drawing
 from edgetally import DrawingError, analyse
 from edgetally.drawing.loading import Loaded, load
 from edgetally.drawing.structure import read_structure

@@ -9,15 +9,15 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from build import analyse_area as analyse
-from drawings import draw_contours, draw_loose, drawing, square
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from outlines import i_section
 
+from build import analyse_area as analyse
+from drawings import draw_contours, draw_loose, drawing, square
 from edgetally import Analysis, OutlineError
 from edgetally.curves import Arc, Curve, Line, Source
 from edgetally.outline.assembly import assemble
+from outlines import i_section
 
 OUTLINE = {"layer": "OUTLINE"}
 SHAPE = i_section(200, 100, 5.6, 8.5, 12)

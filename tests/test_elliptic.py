@@ -5,9 +5,9 @@ from math import acos, cos, hypot, pi, radians, sin, sqrt, tau
 import mpmath
 import numpy as np
 import pytest
-from curve_kinds import chopped, elliptic_arcs, places, shares, size_of
 from hypothesis import given, settings
 
+from curve_kinds import chopped, elliptic_arcs, places, shares, size_of
 from edgetally.curves import Arc, EllipticArc, Line, Packed
 from edgetally.curves.green import Moments, moments
 from edgetally.curves.intersections import nearest

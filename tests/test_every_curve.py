@@ -7,9 +7,9 @@ from pathlib import Path
 from typing import Any
 
 import pytest
+
 from build import analyse_area as analyse
 from drawings import drawing, square
-
 from edgetally import Analysis, DrawingError
 
 OUTLINE = {"layer": "OUTLINE"}

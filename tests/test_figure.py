@@ -8,11 +8,11 @@ from pathlib import Path
 from xml.etree import ElementTree
 
 import pytest
-from build import analyse_once as analyse
-from build import section_of
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from build import analyse_once as analyse
+from build import section_of
 from edgetally.analysis import SectionResult
 from edgetally.curves import Arc, Line
 from edgetally.output.figure import STRIP, round_scale, section_picture

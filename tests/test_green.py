@@ -5,11 +5,11 @@ from math import cos, pi, sin, tau
 import mpmath
 import numpy as np
 import pytest
-from curve_kinds import beziers, curves, elliptic_arcs, places
 from fontTools.pens.momentsPen import MomentsPen
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
+from curve_kinds import beziers, curves, elliptic_arcs, places
 from edgetally.curves import Arc, Bezier, Curve, EllipticArc, Line, Packed
 from edgetally.curves.green import enclosed_area, moments
 from edgetally.curves.packed import ARC_NODES, ARC_PANEL

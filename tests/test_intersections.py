@@ -8,9 +8,9 @@ from time import perf_counter
 import numpy as np
 import pytest
 import shapely
-from curve_kinds import angles, chopped, curves, places, runs_back, shares, size_of
 from hypothesis import assume, given, settings
 
+from curve_kinds import angles, chopped, curves, places, runs_back, shares, size_of
 from edgetally.curves import Arc, Bezier, Curve, EllipticArc, Line, bspline_pieces
 from edgetally.curves.intersections import intersect, nearest, overlap
 

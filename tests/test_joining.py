@@ -7,16 +7,16 @@ import random
 import re
 
 import pytest
-from build import Piece, curves_of
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from outlines import i_section, lipped_channel, split_tube
 
+from build import Piece, curves_of
 from edgetally import OutlineError
 from edgetally.curves import Arc, Curve, Line, Source
 from edgetally.outline.assembly import assemble
 from edgetally.outline.joining import close_loops
 from edgetally.outline.records import Outline
+from outlines import i_section, lipped_channel, split_tube
 
 
 def lines(points: list[complex]) -> list[Curve]:

@@ -9,14 +9,14 @@ from cmath import rect
 import numpy as np
 import pytest
 import shapely
-from build import curves_of, section_of
 from hypothesis import given
 from hypothesis import strategies as st
-from outlines import fillet_polygon, i_section
 
+from build import curves_of, section_of
 from edgetally.curves import Arc, Curve, Line
 from edgetally.outline.assembly import assemble
 from edgetally.section.area import AreaResult, area_properties
+from outlines import fillet_polygon, i_section
 
 
 @st.composite

@@ -8,8 +8,8 @@ import random
 import numpy as np
 import pytest
 import shapely
-from build import curves_of
 
+from build import curves_of
 from edgetally.curves import Arc, Curve, Line
 from edgetally.outline.assembly import assemble
 from edgetally.outline.nesting import nest

@@ -8,9 +8,9 @@ from typing import Any
 
 import ezdxf
 import pytest
+
 from build import analyse_area as analyse
 from drawings import INCH, drawing, square
-
 from edgetally import DrawingError
 from edgetally.drawing.loading import load
 from edgetally.drawing.reading import DrawingFile

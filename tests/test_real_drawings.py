@@ -13,9 +13,9 @@ from typing import Any
 import ezdxf
 import pytest
 import shapely
-from build import analyse_area as analyse
 from ezdxf.path import make_path
 
+from build import analyse_area as analyse
 from edgetally import EdgetallyError
 
 FOLDER = Path(os.environ.get("EDGETALLY_DRAWINGS", "")) / "sections"

@@ -6,9 +6,9 @@ from math import pi
 
 import numpy as np
 import pytest
-from torsion_sections import TABLE, disc, hole, moved, polygon, semicircle, size_of
 
 from edgetally.section.solver import solve
+from torsion_sections import TABLE, disc, hole, moved, polygon, semicircle, size_of
 
 # F. Gruttmann, W. Wagner, Shear correction factors in Timoshenko's beam theory for arbitrary shaped cross-sections,
 # Computational Mechanics 27 (2001): rectangle, κ for shear along h, by ν and h/b.
@@ -101,8 +101,10 @@ def test_compliance_turns_as_a_tensor() -> None:
 
 
 def test_largest_stress() -> None:
-    """Rectangle at ν = 0: 3/2 of the mean. Circle: (3 + 2ν)/(2(1 + ν)) of the mean at the centre (Timoshenko and Goodier,
-    § 123), where it is 4/3 all along the diameter at ν = ½ only."""
+    """Rectangle at ν = 0: 3/2 of the mean. Circle: (3 + 2ν)/(2(1 + ν)) of the mean, at the centre.
+
+    Source: Timoshenko and Goodier, Theory of Elasticity, §§ 123, 124.
+    """
     rectangle = solve([polygon((0, 0), (2, 0), (2, 3), (0, 3))], poisson=0.0)
     assert rectangle.shear_peak_y.stress == pytest.approx(1.5 / 6, rel=1e-6)
     assert rectangle.shear_peak_y.at.imag == pytest.approx(1.5, abs=1e-6)

@@ -12,14 +12,14 @@ from typing import Any
 import pypdf
 import pypdfium2
 import pytest
+from pypdf.generic import ContentStream
+
 from build import analyse_once as analyse
 from command import run
 from drawings import INCH, draw_contours, draw_loose, drawing, square
-from outlines import i_section
-from pypdf.generic import ContentStream
-
 from edgetally.output.pens import ACCENT
 from edgetally.output.sheet import Head, sheet_pdf
+from outlines import i_section
 
 SAMPLES = Path(__file__).parent.parent / "sample_drawings"
 

@@ -9,10 +9,10 @@ from math import asinh, comb, cos, pi, radians, sin, sqrt
 import ezdxf.math
 import numpy as np
 import pytest
-from curve_kinds import beziers, chopped, places, shares, size_of
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from curve_kinds import beziers, chopped, places, shares, size_of
 from edgetally.curves import Arc, Bezier, Line, Packed, bspline_pieces, fit_spline
 from edgetally.curves.bernstein import roots
 from edgetally.curves.green import moments

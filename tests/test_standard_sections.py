@@ -13,6 +13,7 @@ from functools import cache
 from typing import Any
 
 import pytest
+
 from build import measure
 from outlines import (
     Outline,

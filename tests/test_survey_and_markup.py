@@ -9,13 +9,13 @@ from typing import Any
 
 import ezdxf
 import pytest
+
 from build import analyse_area as analyse
 from command import run
 from drawings import UNSET, draw_loose, drawing, square
-from outlines import i_section
-
 from edgetally.output.markup import markup_bytes
 from edgetally.survey import survey
+from outlines import i_section
 
 SAMPLES = Path(__file__).parent.parent / "sample_drawings"
 OUTLINE = {"layer": "OUTLINE"}

@@ -9,13 +9,13 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from command import run
-from drawings import INCH, drawing, square
 from hypothesis import given
 from hypothesis import strategies as st
 
 import edgetally
 from build import analyse_once as analyse
+from command import run
+from drawings import INCH, drawing, square
 from edgetally.output.numbers import digits_of, number_text, value_text
 from edgetally.output.symbols import KEYS, name_of, symbol_of
 from edgetally.section.kinds import unit_of

@@ -8,8 +8,12 @@ from itertools import pairwise
 from math import acos, pi, radians, sqrt, tan, tau
 
 import numpy as np
-import outlines
 import pytest
+
+import outlines
+from edgetally.curves import Arc, EllipticArc, Line
+from edgetally.curves.spline import bspline_pieces
+from edgetally.section.solver import TorsionSolution, UnsolvableError, solve
 from torsion_sections import (
     TABLE,
     chopped,
@@ -26,10 +30,6 @@ from torsion_sections import (
     semicircle,
     size_of,
 )
-
-from edgetally.curves import Arc, EllipticArc, Line
-from edgetally.curves.spline import bspline_pieces
-from edgetally.section.solver import TorsionSolution, UnsolvableError, solve
 
 GOOD = 1e-6
 HONEST = 3.0  # an error that is given may be exceeded by no more than this

@@ -6,16 +6,17 @@ from math import tau
 
 import numpy as np
 import pytest
+
 from torsion_sections import polygon
 
 pytest.importorskip("skfem")
 
 import skfem as fem
-from torsion_elements import ByElements, blocks, by_elements, star
 
 from edgetally.curves import EllipticArc
 from edgetally.curves.spline import bspline_pieces
 from edgetally.section.solver import TorsionSolution, solve
+from torsion_elements import ByElements, blocks, by_elements, star
 
 
 def _void(*corners: tuple[float, float]) -> list:

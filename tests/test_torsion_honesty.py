@@ -4,10 +4,10 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from torsion_sections import numbers, random_section, size_of
 
 from edgetally.section.frame import Frame
 from edgetally.section.solver import solve
+from torsion_sections import numbers, random_section, size_of
 
 SECTIONS = 60
 HONEST = 3.0

@@ -6,13 +6,13 @@ from cmath import exp
 from itertools import pairwise
 from math import cos, pi, sin, tau
 
-import outlines
 import pytest
-from torsion_sections import TABLE, Loops, disc, hole, loops_of, moved, polygon
 
+import outlines
 from edgetally.curves import Arc, Line
 from edgetally.section.midline import Strip, strip_of, thin_walled
 from edgetally.section.solver import solve
+from torsion_sections import TABLE, Loops, disc, hole, loops_of, moved, polygon
 
 
 def _polyline(*points: tuple[float, float]) -> tuple[Line, ...]:

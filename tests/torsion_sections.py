@@ -8,9 +8,9 @@ from math import hypot, pi, tanh, tau
 from typing import NamedTuple
 
 import numpy as np
+
 import outlines
 from build import curves_of
-
 from edgetally.curves import Arc, Curve, Line
 from edgetally.curves.nearest import nearest
 from edgetally.section.solver import TorsionSolution

@@ -19,9 +19,8 @@ import numpy as np
 
 sys.path.insert(0, str(Path(__file__).parent.parent))
 
-from torsion_sections import TABLE, Checked, Loops, chopped, loops_of
-
 from edgetally.section.solver import TorsionSolution, solve
+from torsion_sections import TABLE, Checked, Loops, chopped, loops_of
 
 ROWS = {row.name: row for row in TABLE}
 TOLERANCES = (1e-4, 1e-6, 1e-8)
@@ -64,6 +63,7 @@ def boundary(row: Checked, tolerance: float) -> None:
 def elements(row: Checked, xs: list[float], ys: list[float], solid: Callable[..., np.ndarray], wall: float) -> None:
     try:
         import skfem as fem
+
         from torsion_elements import by_elements, graded_to_corners
     except ImportError:
         print("  (scikit-fem is not installed: no rival)")

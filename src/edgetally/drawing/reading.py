@@ -64,7 +64,7 @@ class DrawingFile:
         self.document: Document = loaded.document
         self.name = loaded.name
         self.sha256 = loaded.sha256
-        self.dxf_version = str(loaded.document.dxfversion)
+        self.dxf_version = loaded.version or str(loaded.document.dxfversion)
         self.layers = Layers(self.document)
         self.blocks = Blocks(self.document, self.layers)
         self._used = self.blocks.layers_in_use()
