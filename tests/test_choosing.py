@@ -59,6 +59,19 @@ def test_pick_by_number_or_by_a_point_in_or_nearest(pick: str, number: int) -> N
     assert numbers(pick) == [(str(number), [number])]
 
 
+LABELS = [("Plate", 5 + 5j), ("TUBE 12", 41 + 5j), ("core", 50 + 5j), ("far away", 200 + 0j), ("2", 5 + 6j)]
+
+
+def test_pick_by_a_text_inside_in_any_case() -> None:
+    for pick, number in (("plate", 1), ("tube 12", 2), ("core", 3), ("2", 2)):  # a number is a number first
+        ((name, regions),) = choose(REGIONS, pick, "mm", LABELS)
+        assert (name, regions) == (str(number), (REGIONS[number - 1],))
+    with pytest.raises(UsageError, match="names 2 outer boundaries"):
+        choose(REGIONS, "plate", "mm", [*LABELS, ("plate", 50 + 5j)])
+    with pytest.raises(UsageError, match=r"neither a number, nor a text inside one(.|\n)*named 'Plate', '2'"):
+        choose(REGIONS, "far away", "mm", LABELS)
+
+
 @pytest.mark.parametrize("pick", ["0", "4", "A", "1,2,3", "", "1;2", "--", "nan,1", "."])
 def test_picks_that_name_none(pick: str) -> None:
     with pytest.raises(UsageError, match="--pick"):

@@ -207,7 +207,8 @@ def test_curve_in_a_broken_line_type_is_left_out_with_a_warning(tmp_path: Path) 
     path = drawing(tmp_path, draw)
     analysis = analyse(path, layer="OUTLINE")
     assert value(analysis, "area") == pytest.approx(100)
-    assert [(f.code, f.severity) for f in analysis.findings] == [("entity-skipped", "warning")]
+    skipped = [(f.code, f.severity) for f in analysis.findings if f.code != "repaired-file"]
+    assert skipped == [("entity-skipped", "warning")]  # HIDDEN is not defined in the file, which is a finding too
     assert analyse(path).drawing.reading.layers == ("OUTLINE",)
 
 

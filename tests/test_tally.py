@@ -180,6 +180,8 @@ def test_each_together_and_pick() -> None:
     each = analyse(path, layer="OUTLINE", select="each").sections
     together = analyse(path, layer="OUTLINE", select="together").sections
     picked = analyse(path, layer="OUTLINE", select="2").sections
+    named = analyse(path, layer="OUTLINE", select="b").sections
+    assert named[0].name == picked[0].name == "2"
     by_point = analyse(path, layer="OUTLINE", select="150,5").sections
     areas = [s.properties["area"].value or 0.0 for s in each]
     assert together[0].properties["area"].value == pytest.approx(sum(areas), rel=1e-14)

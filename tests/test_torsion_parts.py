@@ -64,10 +64,11 @@ def test_calculus_on_panels() -> None:
     boundary = Frame.around(TABLE[0].loops).boundary
     nodes = Nodes.on(graded(boundary, 5.0, 12, 8))
     f, derivative = nodes.z**3, 3 * nodes.z**2
-    assert np.abs(nodes.rate(f) - derivative * nodes.slope).max() < 1e-10
+    # arcs of up to 90° are no polynomials
+    assert np.abs(nodes.rate(f) - derivative * nodes.slope).max() < 1e-7
     primitive = nodes.antiderivative(derivative * nodes.slope)
-    assert np.abs(primitive - (f - boundary.start[0] ** 3)).max() < 1e-12
-    assert abs(nodes.around(derivative * nodes.dz)[0]) < 1e-12
+    assert np.abs(primitive - (f - boundary.start[0] ** 3)).max() < 1e-9
+    assert abs(nodes.around(derivative * nodes.dz)[0]) < 1e-9
 
 
 REGIONS = {
@@ -77,7 +78,7 @@ REGIONS = {
     "void near the wall": [disc(2.0), hole(1.0, 0.99 + 0j)],
     "ellipse with a slot": [
         [EllipticArc.from_axes(0j, 3 + 0j, 0.4, 0.0, tau)],
-        curves_of([outlines.backwards(outlines.fillet_polygon([(-2, -0.1, 0), (2, -0.1, 0), (2, 0.1, 0), (-2, 0.1, 0)]))]),
+        curves_of([outlines.backwards(outlines.polygon([(-2, -0.1), (2, -0.1), (2, 0.1), (-2, 0.1)]))]),
     ],
 }  # fmt: skip
 

@@ -169,7 +169,7 @@ def analyse(
     units : `mm`, `cm`, `m`, `in` or `ft`, the drawing's length unit; overrides the header.
     scale : drawn length × scale = real length.
     join_gap : the largest gap between ends that is joined, with its unit, in drawn lengths; at most 0.15 mm.
-    select : `each`, `together`, or which one (a number or a point `X,Y`) where there are several outer boundaries.
+    select : `each`, `together`, or which one (a number, a text inside it, a point `X,Y`) of several outer boundaries.
     out_units : `mm`, `cm`, `m` or `in`, the unit of the results; the drawing's own without it.
     density : kg/m³, or `steel`, `aluminium`, `stainless`; adds the mass per length.
     poisson : Poisson's ratio for the shear areas, from 0 to 0.5.
@@ -207,7 +207,8 @@ def analyse(
     findings += outline.findings
     findings += [_join_finding(join, unit) for join in outline.joins]
     findings += _hatch_findings(reading, outline, drawn_gap, unit)
-    chosen = choose(outline.regions, select, unit)
+    several = len(outline.regions) > 1 and select not in ("each", "together")
+    chosen = choose(outline.regions, select, unit, drawing.labels() if several else ())
     for number in outline.islands:
         x0, y0, _, _ = outline.regions[number].box
         text = f"part {number + 1} lies inside a void of another part"

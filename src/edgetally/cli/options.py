@@ -43,7 +43,7 @@ _READING = [
     ),
     click.option("--each", is_flag=True, help="Several outer boundaries are so many sections."),
     click.option("--together", is_flag=True, help="Several outer boundaries are one section of several parts."),
-    click.option("--pick", metavar="WHICH", help="Take one outer boundary: its number, or a point X,Y in or near it."),
+    click.option("--pick", metavar="WHICH", help="Take one outer boundary: its number, a text inside, or a point X,Y."),
     click.option("--out-units", type=click.Choice(["mm", "cm", "m", "in"]), help="Unit of the results."),
     click.option(
         "--symbols",

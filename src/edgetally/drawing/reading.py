@@ -12,6 +12,7 @@ from edgetally.curves import Curve, Source
 from edgetally.drawing.blocks import Blocks, Leaf
 from edgetally.drawing.entities import ANNOTATION, UnreadError, curves_of, is_fitted, source_of
 from edgetally.drawing.hatches import boundary_of
+from edgetally.drawing.labels import labels_of
 from edgetally.drawing.layers import NEVER_PLOTTED, Layers
 from edgetally.drawing.limits import MAX_CURVES
 from edgetally.drawing.loading import Loaded
@@ -68,6 +69,10 @@ class DrawingFile:
         self.layers = Layers(self.document)
         self.blocks = Blocks(self.document, self.layers)
         self._used = self.blocks.layers_in_use()
+
+    def labels(self) -> list[tuple[str, complex]]:
+        """Return the short texts of model space with their places."""
+        return [(label.words, label.at) for label in labels_of(self.document, self.layers)]
 
     def header_unit(self) -> tuple[str | None, str]:
         """Return the unit that `$INSUNITS` names, None where no section is drawn in it, and the header's words."""

@@ -18,6 +18,8 @@ ROUNDING = 1e-14
 # falls slowly, so twice the difference is given, and never less than a share of the largest: one may vanish by chance.
 SAFETY = 2.0
 CHANCE = 0.1
+# Nor is less claimed than this share of the tolerance that the refinement was steered by.
+CLAIM = 0.03
 
 
 @dataclass(frozen=True, eq=False)
@@ -71,7 +73,7 @@ def axes_of(frame: Frame) -> Floats:
     return np.array([[frame.turn.real, -frame.turn.imag], [frame.turn.imag, frame.turn.real]])
 
 
-def compared(fine: Numbers, coarse: Numbers, axes: Floats) -> Errors:
+def compared(fine: Numbers, coarse: Numbers, axes: Floats, tolerance: float) -> Errors:
     """Return the relative errors of `fine`: its differences to `coarse`, and rounding."""
     scale = max(abs(fine.warping), WARPING_SCALE * fine.polar**2)
     diagonal = np.sqrt(np.abs(np.outer(np.diag(fine.compliance), np.diag(fine.compliance))))
@@ -80,7 +82,7 @@ def compared(fine: Numbers, coarse: Numbers, axes: Floats) -> Errors:
     centre = SAFETY * abs(fine.centre - coarse.centre) / fine.size
     compliance = SAFETY * np.abs(fine.compliance - coarse.compliance) / diagonal
     own_warping = warping if abs(fine.warping) == scale else 0.0
-    least = CHANCE * max(torsion, own_warping, centre, float(compliance.max()))
+    least = max(CHANCE * max(torsion, own_warping, centre, float(compliance.max())), CLAIM * tolerance)
     extra = 10.0 * ROUNDING + fine.smoothing
     compliance = np.maximum(compliance, least) + extra
     turned = np.diag(axes @ fine.compliance @ axes.T)

@@ -21,6 +21,8 @@ RATIO = 4.0
 # A panel may be SLACK times the length of another, slightly more than RATIO, and AWAY times its distance to it longer.
 SLACK = 4.5
 AWAY = 3.0
+# A panel may be this many times longer than its distance to a source in a void: 90° of a circle around one are left.
+REACH = 1.6
 # On 90° of a circle few nodes do, and the preimage of a point nearby is unique.
 TURN = np.pi / 2
 # Nodes of shorter panels would coincide in double precision (sizes near 1).
@@ -200,8 +202,8 @@ def _ladder(first: float) -> list[float]:
 def balanced(panels: Panels, points: Complexes) -> Panels:
     """Halve panels that are long for what is near them, until none is.
 
-    That is longer than AWAY·distance + SLACK·(length of the other) for another panel, or than the distance to one of
-    `points` (sources inside the voids).
+    That is longer than AWAY·distance + SLACK·(length of the other) for another panel, or than REACH times the distance to
+    one of `points` (sources inside the voids).
     """
     fresh: Mask = np.ones(len(panels), dtype=bool)
     for _ in range(ROUNDS):
@@ -227,9 +229,10 @@ def _long(panels: Panels, fresh: Mask, points: Complexes) -> Mask:
             apart = _distance(s[p, 0], s[p, 2], q)
             bad[p] |= (length[p, None] > AWAY * apart + SLACK * length[others]).any(axis=1)
     if points.size:
-        apart = _distance(s[:, 0], s[:, 2], points[None, :])
-        # the chord is nearer than the arc by its rise, at most an eighth of length times turn
-        bad |= (length[:, None] > 1.1 * apart + 0.1 * length[:, None]).any(axis=1)
+        to_chord = _distance(s[:, 0], s[:, 2], points[None, :])
+        to_samples = np.abs(s[:, :, None] - points).min(axis=1)
+        apart = np.where(panels.boundary.is_line[panels.curve, None], to_chord, to_samples)
+        bad |= (length[:, None] > REACH * apart).any(axis=1)
     return bad
 
 

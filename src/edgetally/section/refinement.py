@@ -16,8 +16,13 @@ from edgetally.section.resolution import Resolution, resolve
 # curves.
 BEGINNINGS = ((6.0, 6), (5.0, 4), (3.0, 3))
 LOWEST = 4
-# Panels whose coarseness exceeds this are cut in the first round; each round asks for ten times less.
+# Panels whose coarseness exceeds this are cut in the first round. Each round asks for ten times less, or where unknowns
+# are many for three times less: the next resolution has to be better than the last, but by no more than tells the
+# error.
 CUT = 6e-5
+FALL = 0.1
+SLOW = 0.3
+MANY = 2000
 # At joints, where the solution is not smooth and its coefficients fall slowly, this share of it is enough for a cut,
 # and √(J/I_p) if that is more: the smaller J is against I_p, of which it is what is left, the more digits of ω it
 # needs.
@@ -35,7 +40,7 @@ SHARP = 1e-3
 
 
 class TooManyUnknownsError(Exception):
-    """The coarsest panels already need more unknowns than allowed."""
+    """Two resolutions of the coarsest kind already need more unknowns than allowed."""
 
     def __init__(self, needed: int) -> None:
         super().__init__(needed)
@@ -45,11 +50,12 @@ class TooManyUnknownsError(Exception):
 def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> Iterator[Resolution]:
     """Yield ever finer resolutions, as long as their unknowns stay within `limit` and there is anything left to refine.
 
-    Raises TooManyUnknownsError if not even the coarsest does.
+    Raises TooManyUnknownsError if not even the two coarsest do.
     """
     for depth, order in BEGINNINGS:
         panels = balanced(graded(frame.boundary, depth, order, min(LOWEST, order)), points)
-        unknowns = int(panels.order.sum())
+        # the second resolution, which tells the error, has MORE_NODES more on each panel at most
+        unknowns = int((panels.order + MORE_NODES).sum())
         if unknowns <= limit:
             break
     else:
@@ -66,7 +72,7 @@ def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> 
         if not panels.order.sum() < finer.order.sum() <= limit or cut < ROUNDING:
             return
         panels = finer
-        cut *= 0.1
+        cut *= FALL if int(panels.order.sum()) < MANY else SLOW
 
 
 def _finer(resolution: Resolution, cut: float, joint_cut: float, points: Complexes) -> Panels:

@@ -69,7 +69,7 @@ def solve(
             for best in resolutions(frame, points, poisson, max_unknowns):
                 history.append(numbers_of(frame, best, smoothing))
                 if len(history) > 1:
-                    errors = compared(history[-1], history[-2], axes_of(frame))
+                    errors = compared(history[-1], history[-2], axes_of(frame), tolerance)
                     if errors.worst <= tolerance and (len(history) >= ROUNDS or len(best.nodes) > QUICK):
                         break
                     if len(history) >= HOPELESS and not errors.worst < 1.0:
