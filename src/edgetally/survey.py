@@ -122,10 +122,10 @@ def _layer(name: str, found: Reading | DrawingError, unit: str) -> LayerSurvey:
     if not found.curves:
         return LayerSurvey(name, kinds, NO_OUTLINE, "no curve that draws an outline", 0)
     gap = DEFAULT_GAP_MM / MM_PER[unit]
-    free = open_ends(found.curves, gap)
     regions, reason = _assembled(found.curves, gap, unit)
     if regions:
-        return LayerSurvey(name, kinds, USABLE, "", free, regions)
+        return LayerSurvey(name, kinds, USABLE, "", 0, regions)
+    free = open_ends(found.curves, gap)
     widest = WIDEST_GAP_MM / MM_PER[unit]
     joined, _ = _assembled(found.curves, widest, unit) if free else ((), "")
     if joined:

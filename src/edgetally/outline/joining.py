@@ -124,8 +124,8 @@ def open_ends(curves: Sequence[Curve], gap: float) -> int:
 
 def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], _Ends]:
     """Part the curves that are closed by themselves from those with two ends."""
-    magnitude = max((max(abs(p.real), abs(p.imag)) for c in curves for p in (c.start, c.end)), default=0.0)
-    rounding = ROUNDING * magnitude
+    at = np.array([p for c in curves for p in (c.start, c.end)], dtype=complex)
+    rounding = ROUNDING * float(np.abs(at.view(float)).max(initial=0.0))
     loops, pieces = [], []
     for curve in curves:
         if abs(curve.end - curve.start) > rounding:

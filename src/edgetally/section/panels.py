@@ -202,8 +202,8 @@ def _ladder(first: float) -> list[float]:
 def balanced(panels: Panels, points: Complexes) -> Panels:
     """Halve panels that are long for what is near them, until none is.
 
-    That is longer than AWAY·distance + SLACK·(length of the other) for another panel, or than REACH times the distance to
-    one of `points` (sources inside the voids).
+    That is longer than AWAY·distance + SLACK·(length of the other) for another panel, or than REACH times the distance
+    to one of `points` (sources inside the voids).
     """
     fresh: Mask = np.ones(len(panels), dtype=bool)
     for _ in range(ROUNDS):

@@ -23,6 +23,8 @@ CUT = 6e-5
 FALL = 0.1
 SLOW = 0.3
 MANY = 2000
+# Where they are many, no round may multiply them by more than this.
+LEAP = 1.9
 # At joints, where the solution is not smooth and its coefficients fall slowly, this share of it is enough for a cut,
 # and √(J/I_p) if that is more: the smaller J is against I_p, of which it is what is left, the more digits of ω it
 # needs.
@@ -67,6 +69,9 @@ def resolutions(frame: Frame, points: Complexes, poisson: float, limit: int) -> 
         ratio = resolution.torsion.torsion_constant / float(frame.moments[0, 2] + frame.moments[2, 0])
         joint = float(np.sqrt(np.clip(ratio, JOINT**2, 1.0)))
         finer = _finer(resolution, cut, joint * cut, points)
+        while MANY < finer.order.sum() > LEAP * panels.order.sum() and cut < 1.0:
+            cut *= 3.0
+            finer = _finer(resolution, cut, joint * cut, points)
         if int(finer.order.sum()) > limit:
             finer = panels.with_order(np.minimum(panels.order + MORE_NODES, MOST_NODES))
         if not panels.order.sum() < finer.order.sum() <= limit or cut < ROUNDING:

@@ -34,7 +34,7 @@ MAX_UNKNOWNS = 4800
 # are believed, as long as it costs next to nothing.
 ROUNDS = 3
 QUICK = 1200
-# Where resolutions as many as that differ by more than their size, more will not help.
+# Where that many resolutions, and not cheap ones, still differ by more than their size, more will not help.
 HOPELESS = 4
 # With a larger relative error there is no result to speak of.
 MEANINGLESS = 0.01
@@ -72,7 +72,7 @@ def solve(
                     errors = compared(history[-1], history[-2], axes_of(frame), tolerance)
                     if errors.worst <= tolerance and (len(history) >= ROUNDS or len(best.nodes) > QUICK):
                         break
-                    if len(history) >= HOPELESS and not errors.worst < 1.0:
+                    if len(history) >= HOPELESS and len(best.nodes) > QUICK and not errors.worst < 1.0:
                         break
     except TooManyUnknownsError as refusal:
         needed = f"torsion needs at least {refusal.needed} unknowns for this outline"
