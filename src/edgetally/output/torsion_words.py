@@ -34,20 +34,44 @@ def torsion_rows(section: SectionResult, solution: TorsionSolution, symbols: Sym
     peak = solution.torsion_peak
     rows.append((
         "τ_max",
-        f"largest shear stress for torque 1, at {_near(peak.at)}",
+        f"largest shear stress for torque 1, at {_near(peak.at, section)}",
         in_print(number_text(peak.stress / length**3, STRESS_DIGITS)),
         f"1/{Unit(unit, 3).pretty}",
         "",
     ))  # fmt: skip
     for axis, peak in ((letters.x, solution.shear_peak_x), (letters.y, solution.shear_peak_y)):
         value = in_print(number_text(peak.stress / length**2, STRESS_DIGITS))
-        name = f"largest on the outline for force 1 along {axis}, at {_near(peak.at)}"
+        name = f"largest on the outline for force 1 along {axis}, at {_near(peak.at, section)}"
         rows.append((f"τ_{axis},max", name, value, f"1/{Unit(unit, 2).pretty}", ""))
+    rows += _midline_rows(section, solution, symbols)
     return rows
 
 
-def _near(z: complex) -> str:
-    return f"({z.real:.4g}, {z.imag:.4g})"
+def _midline_rows(section: SectionResult, solution: TorsionSolution, symbols: SymbolSet) -> list[Row]:
+    """The second opinion: thin-walled formulas of the midline, each with its difference from the exact number."""
+    thin, strip = section.connected.thin_walled, section.connected.strip
+    if thin is None or strip is None:
+        return []
+    length, unit = length_factor(section.section.unit, section.out_unit), section.out_unit
+    name = f"thin-walled, midline, t = {number_text(strip.thickness * length, 4)} {unit}"
+    rows = []
+    for key, value, exact, power in (
+        ("torsion_constant", thin.torsion_constant, solution.torsion_constant.value, 4),
+        ("warping_constant", thin.warping_constant, solution.warping_constant.value, 6),
+    ):
+        text = in_print(number_text(value * length**power, 5))
+        off = f"differs by {100 * (value / exact - 1):+.2g} %".replace("-", "−") if exact else ""
+        rows.append((symbol_of(key, symbols), name, text, Unit(unit, power).pretty, off))
+    apart = abs(thin.shear_centre - solution.shear_centre) * length
+    centre = _near(thin.shear_centre, section)
+    rows.append(("", f"thin-walled, midline: shear centre at {centre}", number_text(apart, 3), unit, "away"))
+    return rows
+
+
+def _near(z: complex, section: SectionResult) -> str:
+    """A place to four digits, what is nothing but rounding as 0; in the section's own unit, as drawn."""
+    x, y = (0.0 if abs(v) < 1e-9 * section.section.size else v for v in (z.real, z.imag))
+    return f"({x:.4g}, {y:.4g})"
 
 
 def _error(error: float | None) -> str:

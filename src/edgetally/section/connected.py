@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 from edgetally.findings import Finding
 from edgetally.section.kinds import unit_of
+from edgetally.section.midline import Strip, ThinWalled, strip_of, thin_walled
 from edgetally.section.record import Property, Section
 from edgetally.section.solution import TorsionSolution
 from edgetally.section.solver import UnsolvableError, solve
@@ -23,11 +24,15 @@ KEYS = (
 @dataclass(frozen=True, eq=False)
 class ConnectedResult:
     """The properties by key, None for what cannot be given and then with a finding; the solution for plots, where the
-    section is one connected region."""
+    section is one connected region; and the thin-walled formulas of its midline, where it is a strip or a thin cell, as
+    a second opinion that replaces nothing.
+    """
 
     properties: dict[str, Property]
     solution: TorsionSolution | None
     findings: tuple[Finding, ...]
+    strip: Strip | None = None
+    thin_walled: ThinWalled | None = None
 
 
 NOT_ASKED = ConnectedResult({}, None, ())
@@ -53,7 +58,9 @@ def connected_properties(section: Section, *, poisson: float) -> ConnectedResult
         solutions.append(solution)
         findings += solution.findings
     if len(solutions) == 1:
-        return ConnectedResult(_properties(section, solutions[0]), solutions[0], tuple(findings))
+        strip = strip_of([loop.curves for loop in section.regions[0].loops])
+        thin = thin_walled(strip) if strip is not None else None
+        return ConnectedResult(_properties(section, solutions[0]), solutions[0], tuple(findings), strip, thin)
     text = (
         f"the section is {len(solutions)} parts that do not touch: the torsion constant is their sum; shear centre, "
         "warping constant and shear areas have no meaning without a connection and are not given"
