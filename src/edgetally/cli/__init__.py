@@ -30,6 +30,11 @@ cli.add_command(sheet)
 cli.add_command(markup)
 
 
+# The matrices of one section are too small for several threads: with two, the same work was measured to take twice as
+# long. Must be set before numpy is loaded; who sets it outside keeps that.
+os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
+
+
 def main() -> None:
     """Run the command line. Every refusal is a message on stderr and exit code 2, never a traceback."""
     try:
