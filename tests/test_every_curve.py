@@ -235,7 +235,7 @@ def test_sealed_entities_are_refused_by_name(tmp_path: Path, kind: str) -> None:
 
 def test_constant_height_is_noted_and_a_step_refused(tmp_path: Path) -> None:
     def flat(space: Any) -> None:
-        space.add_lwpolyline([(0, 0), (1, 0), (1, 1)], close=True, dxfattribs=OUTLINE | {"elevation": 25.0})
+        space.add_lwpolyline([(0, 0), (10, 0), (10, 10)], close=True, dxfattribs=OUTLINE | {"elevation": 25.0})
 
     def spline(space: Any) -> None:
         curve = space.add_spline(degree=1, dxfattribs=OUTLINE)

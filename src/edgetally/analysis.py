@@ -25,6 +25,8 @@ from edgetally.section.connected import NOT_ASKED, ConnectedResult, connected_pr
 from edgetally.section.record import Property, Section, input_rounding
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
 
+SMALLEST_MM, LARGEST_MM = 6.0, 5000.0
+"""The larger side of nearly every section lies between these (common practice, no source)."""
 SAME_AREA = 1e-3
 """A hatch fills what the outline encloses to this share: CAD programs store its arcs with fewer digits."""
 
@@ -199,6 +201,7 @@ def analyse(
     reading = drawing.read(layers)
     findings += reading.findings
     unit, unit_source = _unit(drawing, units, reading, findings)
+    findings += drawing.dimension_findings(scale)
     drawn_gap = gap * length_factor(gap_unit, unit)
     try:
         outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
@@ -224,6 +227,7 @@ def analyse(
         )
         for section_name, regions in chosen
     )
+    findings += [f for f in (_size_finding(s, unit_source) for s in sections) if f is not None][:1]
     record = DrawingRecord(
         name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
     )
@@ -312,6 +316,20 @@ def _unit(drawing: DrawingFile, option: str | None, reading: Reading, findings: 
         "--units"
     )
     raise DrawingError(message, [Finding("units-missing", "error", message)])
+
+
+def _size_finding(section: SectionResult, unit_source: str) -> Finding | None:
+    """Doubt a unit that only the header names where the section would be of a size that few sections have."""
+    size = section.section.size
+    mm = size * MM_PER[section.section.unit]
+    if unit_source != "header" or SMALLEST_MM <= mm <= LARGEST_MM:
+        return None
+    others = ", ".join(f"{size * MM_PER[u]:.4g} mm if it is {u}" for u in MM_PER if u != section.section.unit)
+    text = (
+        f"by the header's unit, {section.section.unit}, the section would measure {mm:.4g} mm, which few sections do; "
+        f"it would measure {others}: pass the right one with --units"
+    )
+    return Finding("units-suspect", "warning", text)
 
 
 def _join_finding(join: Join, unit: str) -> Finding:

@@ -10,6 +10,7 @@ from ezdxf.document import Drawing as Document
 
 from edgetally.curves import Curve, Source
 from edgetally.drawing.blocks import Blocks, Leaf
+from edgetally.drawing.dimensions import dimension_findings, dimensions_of
 from edgetally.drawing.entities import ANNOTATION, UnreadError, curves_of, is_fitted, source_of
 from edgetally.drawing.hatches import boundary_of
 from edgetally.drawing.labels import labels_of
@@ -73,6 +74,10 @@ class DrawingFile:
     def labels(self) -> list[tuple[str, complex]]:
         """Return the short texts of model space with their places."""
         return [(label.words, label.at) for label in labels_of(self.document, self.layers)]
+
+    def dimension_findings(self, scale: float) -> list[Finding]:
+        """Return what the dimensions of the drawing say against the scale taken."""
+        return dimension_findings(dimensions_of(self.document, self.layers), scale)
 
     def header_unit(self) -> tuple[str | None, str]:
         """Return the unit that `$INSUNITS` names, None where no section is drawn in it, and the header's words."""
