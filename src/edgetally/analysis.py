@@ -16,6 +16,7 @@ from edgetally.errors import DrawingError, OutlineError, UsageError
 from edgetally.findings import Finding, Severity, worst
 from edgetally.outline.assembly import assemble
 from edgetally.outline.choosing import choose
+from edgetally.outline.chords import chord_findings
 from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
 from edgetally.outline.records import Join, Outline, Region
 from edgetally.outline.words import at, handles, length_text, place
@@ -243,7 +244,7 @@ def _measure(
     connected = NOT_ASKED if poisson is None else connected_properties(section, poisson=poisson)
     both = result.properties | connected.properties
     properties = {key: p.converted(section.unit, out_unit) for key, p in both.items()}
-    findings = result.findings + connected.findings
+    findings = (*result.findings, *connected.findings, *chord_findings(drawn.regions, drawn.unit))
     return SectionResult(section, drawn.regions, result, connected, properties, findings, out_unit)
 
 
