@@ -11,7 +11,9 @@ transcriptions of a mill's catalogue.
 from __future__ import annotations
 
 import pytest
+
 from build import curves_of, section_of
+from edgetally.section.connected import connected_properties
 from outlines import (
     Outline,
     channel,
@@ -20,8 +22,6 @@ from outlines import (
     rectangular_hollow_cold,
     rectangular_hollow_hot,
 )
-
-from edgetally.section.connected import connected_properties
 
 # name, outline [mm], printed I_t [cm⁴], difference of the exact value from the printed one [%]
 TORSION: list[tuple[str, Outline, float, float]] = [

@@ -11,10 +11,9 @@ from pathlib import Path
 sys.path.insert(0, str(Path(__file__).parent.parent))
 
 from build import measure
+from edgetally.section.solver import solve
 from references import REFERENCES
 from torsion_sections import TABLE, size_of
-
-from edgetally.section.solver import solve
 
 
 def main() -> None:
@@ -43,7 +42,7 @@ def main() -> None:
         torsion = max(torsion, *(abs(found / expected - 1) for found, expected in pairs))
         if row.shear_centre != 0:
             centre = max(centre, abs(solution.shear_centre - row.shear_centre) / size_of(row.loops))
-    print(f"{len(TABLE)} check sections: J, C_w, shear areas to {torsion:.1e}, shear centre to {centre:.1e} of the size")
+    print(f"{len(TABLE)} check sections: J, C_w, shear areas to {torsion:.1e}, shear centre to {centre:.1e} of size")
 
 
 if __name__ == "__main__":
