@@ -59,7 +59,7 @@ def dimensions_of(document: Document, layers: Layers) -> list[DimensionRow]:
         if layers.hidden(entity.dxf.layer) is not None or entity.dxf.get("invisible", 0):
             continue
         try:
-            measured = float(entity.get_measurement())  # type: ignore[arg-type]
+            measured = float(entity.get_measurement())
             factor = abs(float(entity.override().get("dimlfac", 1.0) or 1.0))
         except (DXFError, TypeError, ValueError, ZeroDivisionError, AttributeError):
             continue  # its style or its points are missing: it says nothing that could be relied on
@@ -81,7 +81,7 @@ def _number(text: str) -> tuple[float | None, float]:
     Counts (4x), tolerances and formatting codes are taken out; a decimal comma is a point. Feet and inches with
     fractions are left alone: they are several numbers.
     """
-    plain = fast_plain_mtext(text).replace("%%c", "").replace("%%C", "")
+    plain = str(fast_plain_mtext(text)).replace("%%c", "").replace("%%C", "")
     numbers = _NUMBER.findall(_TOLERANCE.sub("", _COUNT.sub("", plain)))
     if len(numbers) != 1 or "/" in plain or "°" in plain or "%%d" in plain.lower():
         return None, 0.0
