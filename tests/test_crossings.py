@@ -5,17 +5,23 @@ from __future__ import annotations
 import math
 import random
 import re
+from itertools import pairwise
 
 import numpy as np
 import pytest
 import shapely
+from hypothesis import given
+from hypothesis import strategies as st
 
 from build import curves_of
 from edgetally import OutlineError
-from edgetally.curves import Arc, Curve, Line
+from edgetally.curves import Arc, Bezier, Curve, Line, Packed, Source
+from edgetally.curves.intersections import intersect, overlap
 from edgetally.outline.assembly import assemble
+from edgetally.outline.candidates import apart
 from edgetally.outline.crossings import refuse_crossings
 from edgetally.outline.records import Loop
+from edgetally.outline.self_crossings import crosses_itself
 from outlines import fillet_polygon, i_section, lipped_channel, spandrel
 
 
@@ -28,6 +34,12 @@ def circle(centre: complex, radius: float) -> Curve:
 
 
 SQUARE = polygon(0, 10, 10 + 10j, 10j)
+
+
+def named(curves: list[Curve], handle: str) -> list[Curve]:
+    """The curves as of one closed polyline."""
+    source = Source("LWPOLYLINE", handle, "0")
+    return [Line(c.start, c.end, source) for c in curves]
 
 
 def place_of(error: OutlineError) -> complex:
@@ -135,6 +147,97 @@ def test_comb_of_a_thousand_teeth_and_its_crossing_twin() -> None:
     points[2002] += 0.6
     with pytest.raises(OutlineError):
         assemble(polygon(*points))
+
+
+def test_void_that_touches_the_outer_boundary_along_an_edge() -> None:
+    with pytest.raises(OutlineError, match="run along each other") as error:
+        assemble([*named(SQUARE, "A"), *named(polygon(3, 7, 7 + 4j, 3 + 4j), "B")])
+    assert error.value.findings[0].code == "regions-overlap"
+    assert error.value.findings[0].at == pytest.approx((5, 0))
+
+
+def test_boundaries_nearer_than_the_touch_and_just_not() -> None:
+    """Parallel sides less than a billionth of the extent apart touch; a ten-millionth is a distance."""
+    for gap, accepted in ((5e-9, False), (1e-7, True)):
+        curves = SQUARE + [c.moved(1.0, 10 + gap + 2j) for c in polygon(0, 4, 4 + 4j, 4j)]
+        if accepted:
+            assert len(assemble(curves).regions) == 2
+        else:
+            with pytest.raises(OutlineError):
+                assemble(curves)
+
+
+def test_what_is_far_away_does_not_decide() -> None:
+    """A tube with a wall of 0.1, and the same again 1e8 away: touching is relative to the loops concerned."""
+    tube = [*polygon(0, 10, 10 + 10j, 10j), *polygon(0.1 + 0.1j, 9.9 + 0.1j, 9.9 + 9.9j, 0.1 + 9.9j)]
+    outline = assemble([*tube, *(c.moved(1.0, 1e8) for c in tube)])
+    assert [len(region.voids) for region in outline.regions] == [1, 1]
+
+
+def test_a_scribble_is_refused_without_looking_for_every_crossing() -> None:
+    chance = random.Random(4)
+    discs = [circle(complex(chance.uniform(0, 10), chance.uniform(0, 10)), 4.0) for _ in range(300)]
+    with pytest.raises(OutlineError, match="and at least 88 more such places"):
+        assemble(discs)
+
+
+@pytest.mark.parametrize("closing", [[], [10 - 5j, -5j]])
+def test_one_span_of_a_spline_that_crosses_itself(closing: list[complex]) -> None:
+    """A single cubic with a loop in it, whose area would count with the wrong sign."""
+    loop = Bezier((0j, 15 + 10j, -5 + 10j, 10 + 0j), None, Source("SPLINE", "A", "0"))
+    ends = [10 + 0j, *closing, 0j]
+    # by symmetry it crosses itself on x = 5, where 45t(1−t)² − 15t²(1−t) + 10t³ = 5 beside t = ½: t(1−t) = 1/7
+    curves: list[Curve] = [loop, *(Line(a, b) for a, b in pairwise(ends))]
+    with pytest.raises(OutlineError, match="SPLINE #A meets itself at") as error:
+        assemble(curves)
+    assert place_of(error.value) == pytest.approx(5 + 30j / 7, abs=1e-6)
+
+
+@pytest.mark.parametrize("size", [1.0, 1e3])
+def test_cusps_and_loops_of_a_span(size: float) -> None:
+    """The cubic 0, f + i, 1 − f + i, 1 has a loop for f > 1, a cusp at f = 1, and neither below."""
+    for f, loops in ((1.01, True), (1.0001, True), (1.0, False), (0.9999, False), (0.5, False)):
+        span = Bezier(tuple(size * z for z in (0j, f + 1j, 1 - f + 1j, 1 + 0j)))
+        assert (crosses_itself(span, 1e-9 * size) is not None) == loops
+    assert crosses_itself(Bezier((0j, 10 + 5j, -10 + 5j, 0j)), 1e-9) is None  # closed, its ends meet
+
+
+@pytest.mark.parametrize("seed", range(3))
+def test_random_spans_that_cross_themselves_or_not(seed: int) -> None:
+    """GEOS tells of 3000 chords whether they are simple."""
+    chance = random.Random(seed)
+    found = 0
+    for _ in range(60):
+        control = tuple(
+            complex(chance.uniform(0, 10), chance.uniform(0, 10)) for _ in range(chance.choice([3, 4, 4, 6]))
+        )
+        weights = tuple(chance.uniform(0.3, 3) for _ in control) if chance.random() < 0.4 else None
+        span = Bezier(control, weights)
+        z = span.points(np.linspace(0, 1, 3001))
+        simple = shapely.LineString(np.column_stack([z.real, z.imag])).is_simple
+        assert (crosses_itself(span, 1e-8) is None) == simple
+        found += not simple
+    assert found > 3
+
+
+@given(st.integers(0, 10**6))
+def test_what_is_told_apart_in_arrays_does_not_meet(seed: int) -> None:
+    """Lines and arcs, many concentric, tangent or of huge radius: `apart` is never true of two that intersect."""
+    chance = random.Random(seed)
+    curves: list[Curve] = []
+    for _ in range(14):
+        a, b = (complex(chance.randint(-4, 4), chance.randint(-4, 4)) for _ in range(2))
+        kind = chance.randint(0, 3)
+        if kind == 0:
+            curves.append(Arc.from_centre(a, chance.choice([1.0, 2.0, 3.0]), chance.uniform(0, 6), 2 * math.pi))
+        elif a != b:
+            bulge = chance.choice([1e-9, 1e-4, 0.3, 1.0, -2.0])
+            curves.append(Line(a, b) if kind == 1 else Arc.from_bulge(a, b, bulge))
+    one, other = (k.astype(np.intp) for k in np.triu_indices(len(curves), 1))
+    clear = apart(Packed.of(curves), one, other, 1e-9)
+    for i, j in zip(one[clear].tolist(), other[clear].tolist(), strict=True):
+        assert intersect(curves[i], curves[j], 1e-9) == []
+        assert overlap(curves[i], curves[j], 1e-9) == []
 
 
 def random_loop(chance: random.Random) -> Loop:

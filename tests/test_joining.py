@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 import random
 import re
+from cmath import rect
 
 import pytest
 from hypothesis import given, settings
@@ -15,7 +16,8 @@ from edgetally import OutlineError
 from edgetally.curves import Arc, Curve, Line, Source
 from edgetally.outline.assembly import assemble
 from edgetally.outline.joining import close_loops
-from edgetally.outline.records import Outline
+from edgetally.outline.records import Loop, Outline
+from edgetally.units import MM_PER
 from outlines import i_section, lipped_channel, split_tube
 
 
@@ -95,6 +97,34 @@ def test_open_outline_names_both_ends_and_the_option_that_closes_it() -> None:
     assert area(closed) == pytest.approx(100, rel=1e-12)  # the lines meet where they cross, at the corner
 
 
+@settings(max_examples=150)
+@given(st.floats(0.011, 0.15), st.integers(1, 3), st.floats(-2e3, 2e3), st.sampled_from(["mm", "cm", "m", "in", "ft"]))
+def test_the_option_that_is_offered_does_close_it(gap_mm: float, digits: int, shift: float, unit: str) -> None:
+    """Round gaps too, which the coordinates give as 0.05000000000000071: the option says 0.05mm, and that suffices."""
+    gap = round(gap_mm, digits) / MM_PER[unit]
+    if not 0.0101 <= gap * MM_PER[unit] <= 0.15 - 1e-9:
+        return
+    square = lines([10 * z + shift for z in SQUARE])
+    square[3] = Line(square[3].start, square[3].end + 1j * gap, square[3].source)
+    option = re.search(r"pass --join-gap ([\d.]+)mm", str(refused(square, unit=unit)))
+    assert option is not None
+    assert float(option.group(1)) <= 0.15
+    closed = assemble(square, gap=float(option.group(1)) / MM_PER[unit], unit=unit)
+    assert len(closed.joins) == 1
+    assert area(closed) == pytest.approx(1e4, rel=1e-9)
+
+
+def test_no_option_is_offered_that_would_be_refused() -> None:
+    """A gap of 0.05 beside a piece of 0.3 would be wider than a tenth of it."""
+    pieces = lines([0j, 10 + 0j, 10 + 10j, 10j, 0.35j])
+    pieces[4] = Line(0.35j, 0.05j, pieces[4].source)
+    message = str(refused(pieces))
+    assert "gap 0.05 mm" in message
+    assert "--join-gap" not in message
+    assert "close it in the drawing" in message
+    assert refused(pieces, gap=0.06).findings[0].code == "gap-too-wide"
+
+
 def test_a_gap_that_is_too_wide_has_no_option() -> None:
     square = lines(SQUARE)
     square[3] = Line(10j, 0.2j, square[3].source)
@@ -116,6 +146,19 @@ def test_three_and_more_ends_at_a_point(more: int) -> None:
     assert error.findings[0].code == "branch"
     assert f"{2 + more} curve ends meet at one point at (10, 10)" in str(error)
     assert {"2", "3", "A0"} <= set(error.findings[0].handles)
+
+
+def test_a_hub_of_thousands_of_ends_is_refused_at_once() -> None:
+    """At one point, and scattered within the gap; the pairs among 20 000 ends would be 2e8."""
+    chance = random.Random(1)
+    for spread, how in ((0.0, "at one point"), (0.002, "within the join gap")):
+        spokes: list[Curve] = []
+        for k in range(20_000):
+            off = spread * rect(chance.random(), chance.uniform(0, 6))
+            spokes.append(Line(3.005 + 3.005j + off, 3 + 3j + rect(10.0, 3e-4 * k), Source("LINE", f"{k:X}", "0")))
+        with pytest.raises(OutlineError, match=f"20000 curve ends meet {how}") as error:
+            close_loops(spokes, 0.01, "mm")
+        assert error.value.findings[0].code == "branch"
 
 
 def test_a_third_end_within_the_gap() -> None:
@@ -167,7 +210,7 @@ def test_a_join_wider_than_a_tenth_of_its_neighbour() -> None:
     assert "wider than a tenth" in str(error)
 
 
-@pytest.mark.parametrize("size", [1e-1, 1e-3, 1e-6, 1e-9, 1e-11])
+@pytest.mark.parametrize("size", [1e-1, 1e-3, 1e-6, 1e-9, 1e-11, 1e-12])
 def test_tiny_pieces_are_harmless(size: float) -> None:
     """A corner cut off by a piece down to 1e-12 of the drawing's size."""
     points = [0j, 10 - size + 0j, 10 + 1j * size, 10 + 10j, 10j]
@@ -224,6 +267,26 @@ def test_swept_area_bounds_what_the_join_can_have_done(gap: float, direction: fl
     assert abs(area(outline) - 100) <= bound * (1 + 1e-9)
     other = lines([z + off if k == corner else z for k, z in enumerate(SQUARE)])
     assert abs(area(outline) - area(assemble(other))) <= bound * (1 + 1e-9)
+
+
+@settings(max_examples=80)
+@given(st.floats(1.0, 4.9), st.floats(1e-4, 9e-3), st.floats(0, 2 * math.pi), st.sampled_from([-4.9, -5.5]))
+def test_swept_area_bounds_the_turning_of_a_bent_piece(sweep: float, gap: float, direction: float, turn: float) -> None:
+    """An arc with a gap at one end, against stretching it or its neighbour onto the other; one of 5.5 rad is stiff."""
+    arc = Arc.from_centre(0, 10, 0.0, sweep, Source("ARC", "1", "0"))
+    missed = arc.end + gap * rect(1.0, direction)
+    ear = Arc(missed, 1.5 * rect(1.0, sweep + 0.4), turn, Source("ARC", "2", "0"))
+    rest = (Line(ear.end, -20j), Line(-20j, 15 - 20j), Line(15 - 20j, arc.start))
+    closed = close_loops([arc, ear, *rest], 0.01, "mm")
+    assert len(closed.joins) == 1
+    ways = [
+        [arc.moved(f := (missed - arc.start) / (arc.end - arc.start), arc.start - f * arc.start), ear],
+        [arc, ear.moved(g := (arc.end - ear.end) / (missed - ear.end), ear.end - g * ear.end)],
+        [arc, Line(arc.end, missed), ear],
+    ]
+    for bent in ways:
+        change = abs(abs(Loop((*bent, *rest)).area) - abs(closed.loops[0].area))
+        assert change <= closed.joins[0].swept * (1 + 1e-9)
 
 
 def test_every_curve_is_used_exactly_once() -> None:

@@ -104,6 +104,16 @@ def test_mirror(curves: list[Curve]) -> None:
     )
 
 
+@given(sections())
+def test_half_turn_swaps_the_sides(curves: list[Curve]) -> None:
+    turned, plain = measured([c.moved(-1.0, 7 + 3j) for c in curves]), measured(curves)
+    for one, other in (("x_top", "x_bottom"), ("x_bottom", "x_top"), ("y_left", "y_right"), ("y_right", "y_left")):
+        key, swapped = f"elastic_modulus_{one}", f"elastic_modulus_{other}"
+        allowed = 4 * (bound(plain, swapped) + bound(turned, key))
+        assert abs(value(turned, key) - value(plain, swapped)) <= allowed
+    same(plain, turned, ("area", "second_moment_x", "second_moment_y", "product_of_inertia", "width", "height"))
+
+
 @given(sections(), st.floats(1e-3, 1e3))
 def test_scale(curves: list[Curve], k: float) -> None:
     large, plain = measured([c.moved(complex(k), 0j) for c in curves]), measured(curves)
@@ -120,6 +130,12 @@ def test_shuffled_reversed_pieces_and_another_start(curves: list[Curve], seed: i
     mixed = [c.reversed() if chance.random() < 0.5 else c for c in curves]
     chance.shuffle(mixed)
     same(measured(curves), measured(mixed))
+
+
+@given(sections())
+def test_drawn_the_other_way_round(curves: list[Curve]) -> None:
+    """Outer boundaries clockwise, voids counter-clockwise: the drawing's sense means nothing."""
+    same(measured(curves), measured([c.reversed() for c in reversed(curves)]))
 
 
 @given(sections(), st.floats(0.05, 0.95))

@@ -4,16 +4,20 @@ from __future__ import annotations
 
 import math
 import random
+from cmath import rect
 
 import numpy as np
 import pytest
 import shapely
+from hypothesis import given
+from hypothesis import strategies as st
 
 from build import curves_of
-from edgetally.curves import Arc, Curve, Line
+from edgetally.curves import Arc, Bezier, Curve, Line
 from edgetally.outline.assembly import assemble
-from edgetally.outline.nesting import nest
+from edgetally.outline.nesting import _turning, nest
 from edgetally.outline.records import Loop, Outline, Region
+from edgetally.outline.senses import rough_areas
 
 
 def circle(centre: complex, radius: float, start: float = 0.0) -> Curve:
@@ -68,6 +72,34 @@ def test_five_hundred_rings_one_in_the_other() -> None:
     assert voids(outline) == [1] * 250
 
 
+@pytest.mark.parametrize("bulge", [0.0, 0.2])
+def test_looking_at_runs_of_curves_decides_as_looking_at_each(bulge: float) -> None:
+    """A wreath of 3000 curves and points all over it, near it and on its curves' chords, against the plain sum."""
+    n = 3000
+    corners = [(40 + 8 * math.sin(37 * k)) * rect(1.0, 2 * math.pi * k / n) for k in range(n)]
+    pairs = zip(corners, [*corners[1:], corners[0]], strict=True)
+    loop = Loop(tuple(Arc.from_bulge(a, b, bulge) if bulge else Line(a, b) for a, b in pairs))
+    chance = np.random.default_rng(2)
+    points = chance.uniform(-60, 60, 400) + 1j * chance.uniform(-60, 60, 400)
+    near = np.array(corners[:200]) * chance.choice([1 - 1e-7, 1 + 1e-7], 200)
+    points = np.concatenate([points, near])
+    plain = loop.packed.turning(points)
+    assert _turning(loop, points) == pytest.approx(plain, abs=1e-9)
+    assert {0.0, 1.0} <= set(np.round(plain / (2 * math.pi)))
+
+
+def test_thousands_of_voids_in_an_outline_of_thousands_of_curves() -> None:
+    points = [0j]
+    for k in range(2000):
+        points += [complex(k + x, y) for x, y in ((0.25, 0), (0.25, 5), (0.75, 5), (0.75, 0))]
+    points += [2000 + 0j, 2000 - 2j, -2j]
+    comb: list[Curve] = [Line(a, b) for a, b in zip(points, [*points[1:], points[0]], strict=True)]
+    teeth = [circle(complex(k + 0.5, 2.5), 0.1) for k in range(2000)]
+    between = [circle(complex(k, 2.5), 0.1) for k in range(1, 2000)]
+    outline = assemble([*comb, *teeth, *between])
+    assert sorted(voids(outline)) == [0] * 1999 + [2000]
+
+
 def test_loops_are_directed_with_the_material_on_the_left() -> None:
     for flip in (False, True):
         curves = [c.reversed() for c in box(0, 0, 10, 10)[::-1]] if flip else box(0, 0, 10, 10)
@@ -76,6 +108,20 @@ def test_loops_are_directed_with_the_material_on_the_left() -> None:
         assert region.outer.area == pytest.approx(100)
         assert region.voids[0].area == pytest.approx(-4 * math.pi)
         assert region.area == pytest.approx(100 - 4 * math.pi)
+
+
+@given(
+    st.lists(st.floats(-6.28, 6.28).filter(lambda turn: abs(turn) > 1e-8), min_size=3, max_size=6), st.floats(0, 1e5)
+)
+def test_rough_areas_decide_as_the_integrals_do(turns: list[float], shift: float) -> None:
+    """Polygons with arcs of any turn for sides, which may cross themselves, beside one with a side that is no arc."""
+    corners = [shift + rect(10.0, k) for k in range(len(turns))]
+    pairs = zip(corners, [*corners[1:], corners[0]], turns, strict=True)
+    bent = Loop(tuple(Arc.from_bulge(a, b, math.tan(turn / 4)) for a, b, turn in pairs))
+    other = Loop((Bezier((0j, 5 - 5j, 10 + 0j)), Line(10, 0)))
+    areas, perimeters = rough_areas([bent, other, bent.reversed()])
+    assert perimeters == pytest.approx([bent.perimeter, other.perimeter, bent.perimeter], rel=1e-14)
+    assert np.abs(areas - [bent.area, other.area, -bent.area]).max() <= 1e-14 * perimeters.max() ** 2 + 1e-13 * shift
 
 
 def test_regions_and_voids_come_from_left_to_right() -> None:

@@ -4,6 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+import numpy as np
+from numpy.typing import NDArray
+
 from edgetally.curves import Curve
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
@@ -12,11 +15,14 @@ from edgetally.outline.duplicates import without_duplicates
 from edgetally.outline.joining import DEFAULT_GAP_MM, ROUNDING, close_loops
 from edgetally.outline.nesting import nest
 from edgetally.outline.records import Loop, Outline
+from edgetally.outline.senses import rough_areas
 from edgetally.outline.words import at, handles, place
 from edgetally.units import MM_PER
 
 FLAT = 1e-12
 """A loop whose area is less than this share of its perimeter squared encloses nothing: rounding of its own ends."""
+DOUBTFUL = 10 * FLAT
+"""Below this share the area is integrated before it is decided."""
 
 
 def assemble(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "mm") -> Outline:
@@ -33,8 +39,9 @@ def assemble(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "
         raise OutlineError("no curve there encloses an area")
     refuse_crossings(loops)
     refuse_contact(closed.strays, loops)
-    _refuse_flat(loops)
-    regions, islands = nest(loops)
+    areas, perimeters = rough_areas(loops)
+    _refuse_flat(loops, areas, perimeters)
+    regions, islands = nest(loops, areas)
     findings = [*specks, *cleared.findings, *map(_stray, closed.strays)]
     return Outline(tuple(regions), tuple(closed.joins), tuple(islands), tuple(findings))
 
@@ -60,8 +67,9 @@ def _without_specks(curves: Sequence[Curve]) -> tuple[list[Curve], list[Finding]
     return kept, [Finding("tiny-curve-removed", "note", message, at(z), handles(c.source for c in specks))]
 
 
-def _refuse_flat(loops: Sequence[Loop]) -> None:
-    for loop in loops:
+def _refuse_flat(loops: Sequence[Loop], areas: NDArray[np.float64], perimeters: NDArray[np.float64]) -> None:
+    flat = np.abs(areas) <= DOUBTFUL * perimeters**2
+    for loop in (loops[k] for k in np.flatnonzero(flat).tolist()):
         if abs(loop.area) <= FLAT * loop.perimeter**2:
             sources = [curve.source for curve in loop.curves]
             z = loop.curves[0].start

@@ -1,6 +1,7 @@
 """No two boundary curves may meet but where one ends and the next begins: decided on the true curves.
 
-Candidates come from a tree of the curves' boxes; straight pairs are decided in arrays, all others pair by pair.
+Candidates come from a tree of the curves' boxes; straight pairs, and lines and arcs that keep clear of each other, are
+decided in arrays, all others pair by pair.
 """
 
 from __future__ import annotations
@@ -12,19 +13,26 @@ import shapely
 from numpy.typing import NDArray
 
 from edgetally.curves import Curve, Packed
+from edgetally.curves.green import EPS
 from edgetally.curves.intersections import intersect, nearest, overlap
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
+from edgetally.outline.candidates import apart, near_pairs
 from edgetally.outline.records import Loop
+from edgetally.outline.self_crossings import crosses_itself
 from edgetally.outline.words import at, handles, place
 
 TOUCH = 1e-9
-"""Boundaries nearer than this share of the drawing's extent are taken to touch: a thousandth of a micron in a metre."""
+"""Boundaries nearer than this share of the larger loop's extent are taken to touch: a nanometre in a metre."""
+ROUNDING = 4 * EPS
+"""Of the coordinates: boundaries nearer than that cannot be told from ones that touch."""
 FOLD = 1e-9
 """Two straight pieces that leave a corner at a smaller angle [rad] than this run over each other."""
 PARTING = 0.9
 """Cosine of the angle between two curves as they leave a corner: above it they may run close to each other."""
 REPORTED = 12
+ENOUGH = 100
+"""So many places are enough to refuse: in a scribble that crosses itself everywhere the rest is not looked for."""
 
 
 def refuse_crossings(loops: Sequence[Loop]) -> None:
@@ -35,30 +43,35 @@ def refuse_crossings(loops: Sequence[Loop]) -> None:
     curves = [curve for loop in loops for curve in loop.curves]
     packed = Packed.of(curves)
     boxes = packed.boxes
-    extent = float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max())
-    touch = TOUCH * extent
-    grown = boxes + np.array([-touch, -touch, touch, touch])
-    shapes = shapely.box(*grown.T)
-    one, other = shapely.STRtree(shapes).query(shapes)
-    keep = one < other
-    one, other = one[keep], other[keep]
-
-    follower = _followers(loops)
-    adjacent = (follower[one] == other) | (follower[other] == one)
-    straight = packed.is_straight[one] & packed.is_straight[other]
-    suspects = np.concatenate([
-        np.flatnonzero(straight & adjacent)[_folds(packed, follower, one, other, straight & adjacent)],
-        np.flatnonzero(straight & ~adjacent)[_near(packed, one, other, straight & ~adjacent, touch)],
-        np.flatnonzero(~straight & ~adjacent),
-        np.flatnonzero(~straight & adjacent)[~_plain_joints(packed, follower, one, other, ~straight & adjacent, touch)],
-    ])  # fmt: skip
     run = _Run(loops, curves, packed)
+    touch = np.maximum(TOUCH * run.extents(boxes), ROUNDING * packed.magnitude)
+    follower = _followers(loops)
+    chosen: list[NDArray[np.intp]] = []
+    for one, other in near_pairs(boxes, touch):
+        adjacent = (follower[one] == other) | (follower[other] == one)
+        straight = packed.is_straight[one] & packed.is_straight[other]
+        suspect = np.zeros(len(one), dtype=bool)
+        near = np.maximum(touch[one], touch[other])
+        for which, decided in (
+            (straight & adjacent, _folds(packed, follower, one, other, straight & adjacent)),
+            (straight & ~adjacent, _near(packed, one, other, straight & ~adjacent, near)),
+            (~straight & adjacent, ~_plain_joints(packed, follower, one, other, ~straight & adjacent, near)),
+        ):
+            suspect[which] = decided
+        bent = ~straight & ~adjacent
+        suspect[bent] = ~apart(packed, one[bent], other[bent], near[bent])
+        chosen.append(np.column_stack([one[suspect], other[suspect]]))
     found: list[tuple[complex, Curve, Curve]] = []
-    for k in np.sort(suspects):
-        i, j = int(one[k]), int(other[k])
-        z = run.contact(i, j, touch)
+    for k, curve in zip(packed.others.at.tolist(), packed.others.curves, strict=True):
+        own = crosses_itself(curve, float(touch[k]))
+        if own is not None:
+            found.append((own, curve, curve))
+    for i, j in sorted(map(tuple, np.concatenate(chosen).tolist())) if chosen else ():
+        z = run.contact(i, j, float(max(touch[i], touch[j])))
         if z is not None:
             found.append((z, curves[i], curves[j]))
+            if len(found) >= ENOUGH:
+                break
     if found:
         raise _refusal(found)
 
@@ -116,7 +129,7 @@ def _plain_joints(
     one: NDArray[np.intp],
     other: NDArray[np.intp],
     which: NDArray[np.bool_],
-    touch: float,
+    touch: NDArray[np.float64],
 ) -> NDArray[np.bool_]:
     """Tell which of the chosen neighbours, of which an arc is one, surely meet in their common corner N only.
 
@@ -125,6 +138,7 @@ def _plain_joints(
     of their centres. Whatever is left is decided pair by pair.
     """
     i, j = one[which], other[which]
+    touch = touch[which]
     forward = follower[i] == j
     a, b = np.where(forward, i, j), np.where(forward, j, i)
     known = (packed.is_straight | packed.is_arc)[a] & (packed.is_straight | packed.is_arc)[b]
@@ -154,7 +168,7 @@ def _plain_joints(
 
 
 def _near(
-    packed: Packed, one: NDArray[np.intp], other: NDArray[np.intp], which: NDArray[np.bool_], touch: float
+    packed: Packed, one: NDArray[np.intp], other: NDArray[np.intp], which: NDArray[np.bool_], touch: NDArray[np.float64]
 ) -> NDArray[np.bool_]:
     """Tell which of the chosen straight pairs cross or come nearer than `touch`."""
     a, b = packed.start[one[which]], packed.end[one[which]]
@@ -175,7 +189,7 @@ def _near(
         return apart
 
     clearance = np.minimum.reduce([distance(a, b, c), distance(a, b, d), distance(c, d, a), distance(c, d, b)])
-    near: NDArray[np.bool_] = crossing | (clearance <= touch)
+    near: NDArray[np.bool_] = crossing | (clearance <= touch[which])
     return near
 
 
@@ -187,10 +201,17 @@ class _Run:
         self.length = packed.lengths
         self.loop = np.repeat(np.arange(len(loops)), [len(loop.curves) for loop in loops])
         total = np.cumsum(self.length)
-        first = np.cumsum([0] + [len(loop.curves) for loop in loops])[:-1]
+        self.first = np.cumsum([0] + [len(loop.curves) for loop in loops])[:-1]
         before = total - self.length
-        self.along = before - before[first][self.loop]
+        self.along = before - before[self.first][self.loop]
         self.perimeter = np.bincount(self.loop, weights=self.length)
+
+    def extents(self, boxes: NDArray[np.float64]) -> NDArray[np.float64]:
+        """Return for every curve the larger of width and height of its loop, by the curves' boxes."""
+        low = np.minimum.reduceat(boxes[:, :2], self.first)
+        high = np.maximum.reduceat(boxes[:, 2:], self.first)
+        extents: NDArray[np.float64] = (high - low).max(axis=1)[self.loop]
+        return extents
 
     def contact(self, i: int, j: int, touch: float) -> complex | None:
         """Return a point where curves i and j meet other than by following each other, None where they do not."""
@@ -219,7 +240,7 @@ class _Run:
 def _refusal(found: list[tuple[complex, Curve, Curve]]) -> OutlineError:
     findings = []
     for z, a, b in found[:REPORTED]:
-        if a.source == b.source and a.source.handle:
+        if a is b or (a.source == b.source and a.source.handle):
             which = f"{a.source} meets itself"
         else:
             which = f"{a.source} and {b.source} cross, touch or run over each other"
@@ -227,5 +248,6 @@ def _refusal(found: list[tuple[complex, Curve, Curve]]) -> OutlineError:
         findings.append(Finding("crossing", "error", message, at(z), handles((a.source, b.source))))
     lines = [f.message for f in findings]
     if len(found) > len(findings):
-        lines.append(f"and {len(found) - len(findings)} more such places")
+        least = "at least " if len(found) >= ENOUGH else ""
+        lines.append(f"and {least}{len(found) - len(findings)} more such places")
     return OutlineError("\n".join(lines), findings)

@@ -9,18 +9,18 @@ over each other, and are refused.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from dataclasses import dataclass, field
+from collections.abc import Hashable, Sequence
+from dataclasses import dataclass, field, replace
 
 import numpy as np
-import shapely
 from numpy.typing import NDArray
 
-from edgetally.curves import Curve, Packed
+from edgetally.curves import UNKNOWN, Curve, Packed
 from edgetally.curves.green import EPS, enclosed_area
 from edgetally.curves.intersections import overlap
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
+from edgetally.outline.candidates import Indices, apart, near_pairs
 from edgetally.outline.words import at, handles, place
 
 SAME = 1e-10
@@ -78,10 +78,29 @@ def without_duplicates(curves: Sequence[Curve]) -> Cleared:
     if len(curves) < 2:
         return Cleared(curves, [])
     packed = Packed.of(curves)
+    figure = _figures(curves, packed)
+    copies = _copies(curves, packed, figure)
+    once = np.flatnonzero(~copies)
+    if len(once) < len(curves):
+        kept = [curves[k] for k in once.tolist()]
+        cleared, cuts = _cleared(kept, Packed.of(kept), figure[once])
+        # copies are told of with what else is drawn twice
+        cuts = _Cuts(
+            whole=sorted([*np.flatnonzero(copies).tolist(), *(int(once[k]) for k in cuts.whole)]),
+            part=[int(once[k]) for k in cuts.part],
+            shared=[int(once[k]) for k in cuts.shared],
+        )
+    else:
+        cleared, cuts = _cleared(curves, packed, figure)
+    return Cleared(cleared, list(_findings(curves, cuts)))
+
+
+def _cleared(curves: list[Curve], packed: Packed, figure: NDArray[np.intp]) -> tuple[list[Curve], _Cuts]:
+    """Return the curves without what two of them have in common, and what was cut."""
     boxes = packed.boxes
     extent = float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max())
     tolerance = max(SAME * extent, ROUNDING * packed.magnitude)
-    figure = _figures(curves, packed)
+    figures = _Figures(curves, packed, figure)
     cuts = _Cuts()
     meetings: dict[tuple[int, int], list[_Meeting]] = {}
     for i, j in _candidates(packed, boxes, tolerance):
@@ -96,12 +115,12 @@ def without_duplicates(curves: Sequence[Curve]) -> Cleared:
             else:
                 cuts.doubled(j, meeting.on_j)
     for (one, other), shared in meetings.items():
-        same_sense = _is_left(curves, figure, one) == _is_left(curves, figure, other)
+        same_sense = figures.is_left(one) == figures.is_left(other)
         beside = [m for m in shared if m.against == same_sense]
         over = [m for m in shared if m.against != same_sense]
-        if over and not beside and _cover(over, packed, figure, one, other):
-            for member in np.flatnonzero(figure == other):
-                cuts.add(int(member), (0.0, 1.0), cuts.whole)
+        if over and not beside and figures.covered(over, one, other):
+            for member in figures.members(other):
+                cuts.add(member, (0.0, 1.0), cuts.whole)
         elif over:
             raise _lie_over(curves, over[0])
         else:
@@ -109,16 +128,83 @@ def without_duplicates(curves: Sequence[Curve]) -> Cleared:
                 cuts.add(m.i, m.on_i, cuts.shared)
                 cuts.add(m.j, m.on_j, None)
     if not cuts.stretches:
-        return Cleared(curves, [])
+        return curves, cuts
     kept: list[Curve] = []
     for k, curve in enumerate(curves):
         kept += _remaining(curve, cuts.stretches[k], tolerance) if k in cuts.stretches else [curve]
-    return Cleared(kept, list(_findings(curves, cuts)))
+    return kept, cuts
 
 
-def _is_left(curves: Sequence[Curve], figure: NDArray[np.intp], number: int) -> bool:
-    """Tell whether a figure is drawn counter-clockwise, its inside on the left."""
-    return enclosed_area(Packed.of(curves[int(k)] for k in np.flatnonzero(figure == number))) > 0
+class _Figures:
+    """The members of every figure, its length and its sense, each found once."""
+
+    def __init__(self, curves: Sequence[Curve], packed: Packed, figure: NDArray[np.intp]) -> None:
+        self._curves, self._lengths = curves, packed.lengths
+        self._order = np.argsort(figure, kind="stable")
+        self._bounds = np.searchsorted(figure[self._order], np.arange(figure.max(initial=-1) + 2))
+        self._left: dict[int, bool] = {}
+
+    def members(self, number: int) -> list[int]:
+        members: list[int] = self._order[self._bounds[number] : self._bounds[number + 1]].tolist()
+        return members
+
+    def is_left(self, number: int) -> bool:
+        """Tell whether a figure is drawn counter-clockwise, its inside on the left."""
+        if number not in self._left:
+            self._left[number] = enclosed_area(Packed.of(self._curves[k] for k in self.members(number))) > 0
+        return self._left[number]
+
+    def covered(self, over: Sequence[_Meeting], one: int, other: int) -> bool:
+        """Tell whether the common stretches are all of both figures: the same figure twice."""
+        common_i = sum(float(self._lengths[m.i]) * (m.on_i[1] - m.on_i[0]) for m in over)
+        common_j = sum(float(self._lengths[m.j]) * (m.on_j[1] - m.on_j[0]) for m in over)
+        all_i, all_j = (float(self._lengths[self.members(number)].sum()) for number in (one, other))
+        return common_i >= ALL * all_i and common_j >= ALL * all_j
+
+
+def _copies(curves: Sequence[Curve], packed: Packed, figure: NDArray[np.intp]) -> NDArray[np.bool_]:
+    """Tell which curves repeat an earlier one to the last digit: loose ones, and figures that are repeated whole.
+
+    Only a short cut: without it, n copies of one curve would be n² pairs.
+    """
+    alike = _alike(packed)
+    copies = np.zeros(len(curves), dtype=bool)
+    if alike.max(initial=-1) + 1 == len(curves):
+        return copies
+    drawn: set[tuple[int, ...]] = set()
+    taken: set[int] = set()
+    order = np.argsort(figure, kind="stable")
+    first = np.searchsorted(figure[order], 0)
+    for members in np.split(order[first:], np.flatnonzero(np.diff(figure[order[first:]])) + 1):
+        whole = tuple(sorted(alike[members].tolist()))
+        copies[members] = whole in drawn
+        drawn.add(whole)
+        taken.update(whole)
+    for k in np.sort(order[:first]).tolist():
+        copies[k] = int(alike[k]) in taken
+        taken.add(int(alike[k]))
+    return copies
+
+
+def _alike(packed: Packed) -> NDArray[np.intp]:
+    """Number the curves so that those equal to the last digit, straight ones in either sense, have one number."""
+    swap = packed.is_straight & (
+        (packed.start.real > packed.end.real)
+        | ((packed.start.real == packed.end.real) & (packed.start.imag > packed.end.imag))
+    )
+    start, end = np.where(swap, packed.end, packed.start), np.where(swap, packed.start, packed.end)
+    kind = np.zeros(len(packed))
+    numbers: dict[Hashable, int] = {}
+    for k, curve in zip(packed.others.at, packed.others.curves, strict=True):
+        kind[k] = 1 + numbers.setdefault(replace(curve, source=UNKNOWN), len(numbers))
+    columns = np.column_stack([
+        start.real, start.imag, end.real, end.imag, packed.spoke.real, packed.spoke.imag, packed.sweep, kind,
+    ])  # fmt: skip
+    order = np.lexsort(columns.T)
+    steps = np.any(columns[order[1:]] != columns[order[:-1]], axis=1)
+    alike = np.empty(len(packed), dtype=np.intp)
+    alike[order] = np.concatenate([[0], np.cumsum(steps)])
+    return alike
 
 
 def _figures(curves: Sequence[Curve], packed: Packed) -> NDArray[np.intp]:
@@ -145,13 +231,18 @@ def _figures(curves: Sequence[Curve], packed: Packed) -> NDArray[np.intp]:
 
 def _candidates(packed: Packed, boxes: NDArray[np.float64], tolerance: float) -> list[tuple[int, int]]:
     """Return the pairs that may run along each other; of straight ones only those that do lie on one line."""
-    shapes = shapely.box(*(boxes + np.array([-tolerance, -tolerance, tolerance, tolerance])).T)
-    one, other = shapely.STRtree(shapes).query(shapes)
-    keep = one < other
-    one, other = one[keep], other[keep]
-    straight = packed.is_straight
-    mixed = straight[one] != straight[other]
-    both = straight[one] & straight[other]
+    found: list[tuple[int, int]] = []
+    for one, other in near_pairs(boxes, tolerance):
+        chosen = _alongside(packed, one, other, tolerance)
+        # curves of two kinds do not run along each other; of one kind only where their ends or middles could meet
+        bent = np.flatnonzero(~packed.is_straight[one] & ~packed.is_straight[other])
+        chosen[bent] = ~apart(packed, one[bent], other[bent], tolerance)
+        found += zip(one[chosen].tolist(), other[chosen].tolist(), strict=True)
+    return sorted(found)
+
+
+def _alongside(packed: Packed, one: Indices, other: Indices, tolerance: float) -> NDArray[np.bool_]:
+    """Tell which pairs are straight pieces that run along each other."""
     a, b = packed.start[one], packed.end[one]
     c, d = packed.start[other], packed.end[other]
     chord = b - a
@@ -163,19 +254,8 @@ def _candidates(packed: Packed, boxes: NDArray[np.float64], tolerance: float) ->
         0.0, np.minimum(along_c.real, along_d.real)
     )
     # two short pieces at an angle may also be near one line: what is common must be more than they are apart
-    along = both & (aside <= tolerance) & (common > 2.0 * np.maximum(tolerance, aside))
-    # curves of two kinds do not run along each other; of one kind only where their ends or middles could meet
-    chosen = along | (~both & ~mixed)
-    return [(int(i), int(j)) for i, j in zip(one[chosen], other[chosen], strict=True)]
-
-
-def _cover(over: Sequence[_Meeting], packed: Packed, figure: NDArray[np.intp], one: int, other: int) -> bool:
-    """Tell whether the common stretches are all of both figures: the same figure twice."""
-    lengths = packed.lengths
-    common_i = sum(float(lengths[m.i]) * (m.on_i[1] - m.on_i[0]) for m in over)
-    common_j = sum(float(lengths[m.j]) * (m.on_j[1] - m.on_j[0]) for m in over)
-    all_i, all_j = float(lengths[figure == one].sum()), float(lengths[figure == other].sum())
-    return common_i >= ALL * all_i and common_j >= ALL * all_j
+    along: NDArray[np.bool_] = (aside <= tolerance) & (common > 2.0 * np.maximum(tolerance, aside))
+    return along & packed.is_straight[one] & packed.is_straight[other]
 
 
 def _lie_over(curves: Sequence[Curve], meeting: _Meeting) -> OutlineError:

@@ -1,8 +1,4 @@
-"""Loose curves → closed loops: which end meets which, and what is done about the gap.
-
-An **end** is one of the two ends of an open curve; end 2i is the start of curve i, end 2i + 1 its end. Ends are paired
-nearest first and one to one, up to the join gap. Ends nearer than rounding are one point and their pairing is no join.
-"""
+"""Loose curves → closed loops: what is refused, and what is done about each gap."""
 
 from __future__ import annotations
 
@@ -11,12 +7,13 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
-from numpy.typing import NDArray
 
 from edgetally.curves import Curve, Line
 from edgetally.curves.green import EPS
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
+from edgetally.outline.candidates import Indices
+from edgetally.outline.pairing import SLENDER, Ends, pair
 from edgetally.outline.records import Join, Loop
 from edgetally.outline.words import at, enough_mm, handles, length_text, place
 from edgetally.units import MM_PER
@@ -29,22 +26,10 @@ NEIGHBOUR_SHARE = 0.1
 """A join may not be wider than this share of the shorter of the two curves: it would be an edge of its own."""
 ROUNDING = 64 * EPS
 """Ends nearer than this times the largest coordinate differ by the rounding of their own computation."""
-SLENDER = 4.0
-"""A curve whose length exceeds its chord by this factor is not turned about its ends to close a gap."""
 STRAIGHT = 1.2
 """A stray curve is no longer than this times its chord: what is bent more may be meant as a boundary."""
 REPORTED = 12
 """So many places are listed in a refusal; the rest is counted."""
-
-
-@dataclass(frozen=True, eq=False)
-class _Ends:
-    curves: Sequence[Curve]
-    z: NDArray[np.complex128]
-    rounding: float
-
-    def name(self, end: int) -> str:
-        return f"{self.curves[end // 2].source}"
 
 
 @dataclass(frozen=True, eq=False)
@@ -67,7 +52,7 @@ def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
     loops, ends = _sort(curves)
     if not ends.curves:
         return Closed(loops, [], [])
-    pairing = _pair(ends, gap)
+    pairing = pair(ends, gap)
     if pairing.meeting:
         raise _branch(ends, pairing.meeting, "at one point")
     if pairing.crowded:
@@ -85,7 +70,7 @@ def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
     return Closed(loops, joins, [ends.curves[k] for k in strays])
 
 
-def _strays(ends: _Ends, partner: NDArray[np.intp], clear: float) -> list[int]:
+def _strays(ends: Ends, partner: Indices, clear: float) -> list[int]:
     """Return the curves that no outline can miss: both ends meet nothing within `clear`, and little is enclosed."""
     alone = np.flatnonzero((partner[0::2] < 0) & (partner[1::2] < 0))
     chords = np.abs(ends.z[1::2] - ends.z[0::2])
@@ -104,7 +89,7 @@ def closes(curves: Sequence[Curve], gap: float) -> bool:
     loops, ends = _sort(curves)
     if loops or not ends.curves:
         return bool(loops)
-    partner = _pair(ends, gap).partner
+    partner = pair(ends, gap).partner
     seen = np.zeros(len(ends.curves), dtype=bool)
     for first in range(0, len(partner), 2):
         entry = first
@@ -119,10 +104,10 @@ def closes(curves: Sequence[Curve], gap: float) -> bool:
 def open_ends(curves: Sequence[Curve], gap: float) -> int:
     """Return how many ends of `curves` meet no other."""
     _, ends = _sort(curves)
-    return int((_pair(ends, gap).partner < 0).sum()) if ends.curves else 0
+    return int((pair(ends, gap).partner < 0).sum()) if ends.curves else 0
 
 
-def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], _Ends]:
+def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], Ends]:
     """Part the curves that are closed by themselves from those with two ends."""
     at = np.array([p for c in curves for p in (c.start, c.end)], dtype=complex)
     rounding = ROUNDING * float(np.abs(at.view(float)).max(initial=0.0))
@@ -132,57 +117,10 @@ def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], _Ends]:
             pieces.append(curve)
         elif curve.length > SLENDER * rounding:
             loops.append(Loop((curve,)))
-    return loops, _Ends(pieces, np.array([p for c in pieces for p in (c.start, c.end)], dtype=complex), rounding)
+    return loops, Ends(pieces, np.array([p for c in pieces for p in (c.start, c.end)], dtype=complex), rounding)
 
 
-@dataclass(frozen=True, eq=False)
-class _Pairing:
-    """For every end its partner, −1 where it has none, and the groups of ends that are too many at one point."""
-
-    partner: NDArray[np.intp]
-    meeting: list[list[int]]
-    crowded: list[list[int]]
-
-
-def _pair(ends: _Ends, gap: float) -> _Pairing:
-    """Pair ends nearest first and one to one. `meeting`: three or more at one point; `crowded`: within the gap."""
-    points = shapely.points(ends.z.real, ends.z.imag)
-    one, other = shapely.STRtree(points).query(points, predicate="dwithin", distance=max(gap, ends.rounding))
-    keep = one < other
-    one, other = one[keep], other[keep]
-    distance = np.abs(ends.z[one] - ends.z[other])
-    # the two ends of one short piece are no pair; those of a curve that all but closes on itself are
-    length = np.array([c.length for c in ends.curves])
-    own = (one // 2 == other // 2) & (length[one // 2] < SLENDER * np.maximum(distance, ends.rounding))
-    one, other, distance = one[~own], other[~own], distance[~own]
-
-    partner = np.full(len(ends.z), -1, dtype=np.intp)
-    for k in np.lexsort((other, one, distance)):
-        i, j = one[k], other[k]
-        if partner[i] < 0 and partner[j] < 0:
-            partner[i], partner[j] = j, i
-    crowded: list[list[int]] = []
-    for k in np.flatnonzero((partner[one] < 0) != (partner[other] < 0)):
-        odd, near = (one[k], other[k]) if partner[one[k]] < 0 else (other[k], one[k])
-        three = sorted((int(odd), int(near), int(partner[near])))
-        if three not in crowded:
-            crowded.append(three)
-    same = distance <= ends.rounding
-    return _Pairing(partner, _groups(one[same], other[same], len(ends.z)), crowded)
-
-
-def _groups(one: NDArray[np.intp], other: NDArray[np.intp], count: int) -> list[list[int]]:
-    """Return the groups of three and more among ends that coincide pairwise."""
-    touching = np.bincount(np.concatenate([one, other]), minlength=count)
-    meeting: dict[int, set[int]] = {}
-    for i, j in zip(one, other, strict=True):
-        if touching[i] > 1 or touching[j] > 1:
-            group = meeting.get(int(i), {int(i)}) | meeting.get(int(j), {int(j)})
-            meeting.update(dict.fromkeys(group, group))
-    return list({min(group): sorted(group) for group in meeting.values()}.values())
-
-
-def _branch(ends: _Ends, groups: list[list[int]], how: str) -> OutlineError:
+def _branch(ends: Ends, groups: list[list[int]], how: str) -> OutlineError:
     findings = []
     for group in groups[:REPORTED]:
         z = complex(ends.z[group[0]])
@@ -196,7 +134,7 @@ def _branch(ends: _Ends, groups: list[list[int]], how: str) -> OutlineError:
     return _refusal(findings, len(groups))
 
 
-def _refuse_open(ends: _Ends, partner: NDArray[np.intp], strays: set[int], gap: float, unit: str) -> None:
+def _refuse_open(ends: Ends, partner: Indices, strays: set[int], gap: float, unit: str) -> None:
     free = np.array([e for e in np.flatnonzero(partner < 0) if int(e) // 2 not in strays], dtype=np.intp)
     if not free.size:
         return
@@ -223,7 +161,7 @@ def _refuse_open(ends: _Ends, partner: NDArray[np.intp], strays: set[int], gap: 
         else:
             message = f"outline is open: gap {length_text(d, unit)} at {place(z)} between {a} and {b}, {joined}"
             remedy = "close it in the drawing"
-            if d * MM_PER[unit] <= WIDEST_GAP_MM:
+            if d * MM_PER[unit] <= WIDEST_GAP_MM and d <= NEIGHBOUR_SHARE * min(mine.length, yours.length):
                 remedy += f" or pass --join-gap {enough_mm(d, unit)}"
         findings.append(Finding("open-chain", "error", f"{message}; {remedy}", at(z), handles((a, b))))
         if len(findings) == REPORTED:
@@ -238,7 +176,7 @@ def _refusal(findings: list[Finding], count: int) -> OutlineError:
     return OutlineError("\n".join(lines), findings)
 
 
-def _walk(partner: NDArray[np.intp], strays: Sequence[int]) -> list[list[int]]:
+def _walk(partner: Indices, strays: Sequence[int]) -> list[list[int]]:
     """Return the closed chains, each as the list of the ends at which its curves are entered."""
     seen = np.zeros(len(partner) // 2, dtype=bool)
     seen[list(strays)] = True
@@ -254,7 +192,7 @@ def _walk(partner: NDArray[np.intp], strays: Sequence[int]) -> list[list[int]]:
     return chains
 
 
-def _weld(ends: _Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
+def _weld(ends: Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
     """Make the loop: every curve turned along the chain, and the ends at a gap brought to one point."""
     curves = [ends.curves[e // 2] if e % 2 == 0 else ends.curves[e // 2].reversed() for e in chain]
     joins: list[Join] = []
@@ -274,9 +212,8 @@ def _weld(ends: _Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
                 f"tenth of the shorter of them ({length_text(shorter, unit)}); close it in the drawing"
             )
             raise _refusal([Finding("gap-too-wide", "error", message, at(z), handles((a.source, b.source)))], 1)
-        swept = 0.5 * g * (a.length + b.length)
-        joins.append(Join(g, 0.5 * (a.end + b.start), (a.source, b.source), swept))
-        stops[k], starts[n] = _meeting_point(a, b)
+        joins.append(Join(g, 0.5 * (a.end + b.start), (a.source, b.source), _swept(a, g) + _swept(b, g)))
+        stops[k], starts[n] = _meeting_point(a, b, ends.rounding)
     welded: list[Curve] = []
     for k, curve in enumerate(curves):
         welded.append(_stretched(curve, starts[k], stops[k]))
@@ -286,7 +223,7 @@ def _weld(ends: _Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
     return Loop(tuple(welded)), joins
 
 
-def _meeting_point(a: Curve, b: Curve) -> tuple[complex, complex]:
+def _meeting_point(a: Curve, b: Curve, rounding: float) -> tuple[complex, complex]:
     """Return where a ends and where b starts after the join: one point wherever one of them can give way.
 
     Two straight pieces meet where their lines do, if that is no farther from either end than the gap; a straight piece
@@ -298,27 +235,41 @@ def _meeting_point(a: Curve, b: Curve) -> tuple[complex, complex]:
         return a.end, b.start
     if stiff_a != stiff_b:
         return (b.start, b.start) if stiff_a < stiff_b else (a.end, a.end)
-    corner = _corner(a, b) if stiff_a == 0 else None
+    corner = _corner(a, b, rounding) if stiff_a == 0 else None
     meeting = 0.5 * (a.end + b.start) if corner is None else corner
     return meeting, meeting
 
 
-def _corner(a: Curve, b: Curve) -> complex | None:
+def _corner(a: Curve, b: Curve, rounding: float) -> complex | None:
     """Return where the lines of two straight pieces cross, None where that is farther from their ends than they are
-    apart."""
+    apart. Where one piece is only too short it is at the end of the other, as far as they are apart to rounding."""
     along_a, along_b, apart = a.end - a.start, b.end - b.start, b.start - a.end
     across = (along_a.conjugate() * along_b).imag
     if across == 0.0:
         return None
     corner = a.end + (apart.conjugate() * along_b).imag / across * along_a
     reach = max(abs(corner - a.end), abs(corner - b.start))
-    return corner if reach <= abs(apart) else None
+    return corner if reach <= abs(apart) + rounding else None
 
 
 def _stiffness(curve: Curve) -> int:
     if isinstance(curve, Line):
         return 0
     return 1 if curve.length < SLENDER * abs(curve.end - curve.start) else 2
+
+
+def _swept(curve: Curve, gap: float) -> float:
+    """Bound the area that a curve of length L and chord c sweeps when one end moves by the gap g, the other fixed.
+
+    A straight piece sweeps ½gL. One that is turned and stretched by 1 + δ, |δ| ≤ g/c, moves each point by its distance
+    from the fixed end, at most the length up to there, times |δ|: ½gL·L/c·(1 + ½|δ|). What closes on itself is not
+    turned; its other ways to close are a chord, or g more or less of length.
+    """
+    half = 0.5 * gap * curve.length
+    if _stiffness(curve) != 1:
+        return half
+    chord = abs(curve.end - curve.start)
+    return half * curve.length / chord * (1.0 + 0.5 * gap / chord)
 
 
 def _stretched(curve: Curve, start: complex, end: complex) -> Curve:

@@ -14,8 +14,8 @@ from edgetally.findings import Finding
 class Join:
     """Two ends that did not meet exactly and were joined. Lengths in the drawing's unit, areas in its square.
 
-    `swept` bounds the area between all ways to close the gap: moving the end of a curve of length L by the gap g, its
-    other end fixed, sweeps at most about ½gL, and either of the two neighbours may have been the one that was off.
+    `swept` bounds the area between all ways to close the gap: what moving the end by the gap sweeps, the other end
+    fixed, of both neighbours, because either may have been the one that was off; ½gL of a straight piece of length L.
     """
 
     gap: float
@@ -45,10 +45,6 @@ class Loop:
 
     def reversed(self) -> Loop:
         return Loop(tuple(curve.reversed() for curve in reversed(self.curves)))
-
-    def directed(self, *, counter_clockwise: bool) -> Loop:
-        """Return the loop travelled in the sense asked for."""
-        return self if (self.area > 0) == counter_clockwise else self.reversed()
 
     def scaled(self, factor: float) -> Loop:
         return self if factor == 1 else Loop(tuple(curve.moved(complex(factor), 0j) for curve in self.curves))
