@@ -15,7 +15,7 @@ from hypothesis import strategies as st
 from build import analyse_area as analyse
 from drawings import draw_contours, draw_loose, drawing, square
 from edgetally import Analysis, OutlineError
-from edgetally.curves import Arc, Curve, Line, Source
+from edgetally.curves import Arc, Bezier, Curve, Line, Source
 from edgetally.outline.assembly import assemble
 from outlines import i_section
 
@@ -111,6 +111,35 @@ def test_circle_drawn_twice_and_arc_on_a_circle() -> None:
     found = assemble([circle, again, part])
     assert found.regions[0].area == pytest.approx(25 * math.pi, rel=1e-14)
     assert {f.code for f in found.findings} <= {"duplicate-removed"}
+
+
+def test_hundreds_of_copies_are_no_pairs_of_each_with_each() -> None:
+    """Of a circle, of a polyline as a whole, of loose lines in either sense, of a span of a spline; 500 of each."""
+    for k, piece in enumerate((
+        [Arc.from_centre(2 + 3j, 5, 0.7, math.tau)],
+        polygon(box(0, 0, 10, 4), "A"),
+        loose(box(0, 0, 10, 4)),
+        [Bezier((0j, 5 - 5j, 10 + 0j)), Line(10, 0)],
+    )):  # fmt: skip
+        copies: list[Curve] = []
+        for n in range(500):
+            source = Source("COPY", f"{n:X}", "0")
+            some = [replace(c, source=source) for c in piece]  # type: ignore[type-var]
+            copies += [c.reversed() if k == 2 and n % 2 else c for c in some]
+        found = assemble(copies)
+        assert len(found.regions) == 1
+        assert found.regions[0].area == assemble(piece).regions[0].area
+        assert [(f.code, f.severity) for f in found.findings] == [("duplicate-removed", "note")]
+        assert found.findings[0].message.startswith(f"{499 * len(piece)} curves drawn twice")
+
+
+def test_a_copy_of_one_side_of_a_figure_goes_and_the_figure_stays() -> None:
+    """A side of one polyline, shared with another one and drawn a third time as a loose line."""
+    sides = polygon(box(0, 0, 10, 4), "A")
+    found = assemble([replace(sides[2], source=Source("LINE", "L", "0")), *sides, *polygon(box(0, 4, 10, 4), "B")])
+    assert found.regions[0].area == pytest.approx(80, rel=1e-15)
+    assert {f.code for f in found.findings} == {"duplicate-removed", "edge-shared"}
+    assert next(f for f in found.findings if f.code == "duplicate-removed").handles == ("L",)
 
 
 def test_plates_that_share_an_edge_become_one_solid() -> None:

@@ -114,6 +114,18 @@ def test_half_turn_swaps_the_sides(curves: list[Curve]) -> None:
     same(plain, turned, ("area", "second_moment_x", "second_moment_y", "product_of_inertia", "width", "height"))
 
 
+def test_moduli_about_axes_that_are_hard_to_find_claim_no_more_than_is_known() -> None:
+    """A regular triangle with a small void off its middle: the axes are known to 1e-9 rad, the fibres no better."""
+    corners = [20 + 0j, -9.999999999999996 + 17.320508075688775j, -10.000000000000009 - 17.320508075688767j]
+    curves: list[Curve] = [Line(a, b) for a, b in zip(corners, [*corners[1:], corners[0]], strict=True)]
+    curves.append(Arc.from_centre(3.2, 0.25, 0.0, 2 * math.pi))
+    plain, small = measured(curves), measured([c.moved(0.001 + 0j, 0j) for c in curves])
+    assert plain.axes.angle.slack > 1e-10
+    for key in ("elastic_modulus_1_positive", "elastic_modulus_2_positive", "elastic_modulus_2_negative"):
+        allowed = bound(plain, key) * 1e-9 + bound(small, key)
+        assert abs(value(small, key) - 1e-9 * value(plain, key)) <= allowed
+
+
 @given(sections(), st.floats(1e-3, 1e3))
 def test_scale(curves: list[Curve], k: float) -> None:
     large, plain = measured([c.moved(complex(k), 0j) for c in curves]), measured(curves)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from cmath import rect
 from dataclasses import dataclass
-from math import degrees
+from math import degrees, hypot
 
 from edgetally.curves import Packed
 from edgetally.curves.green import EPS, Moments, moments
@@ -65,7 +65,10 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
 
     axes = principal_axes(second_x, second_y, product)
     turned = sums.in_frame(rect(1.0, axes.angle.value))
-    first, second = Bounded(turned.m02, turned.slack["m02"]), Bounded(turned.m20, turned.slack["m20"])
+    # turned by φ too far they change by (I₁ − I₂)·sin²φ
+    astray = abs(turned.m02 - turned.m20) * axes.angle.slack**2
+    first = Bounded(turned.m02, turned.slack["m02"] + astray)
+    second = Bounded(turned.m20, turned.slack["m20"] + astray)
     if axes.arbitrary and first.value < second.value:
         first, second = second, first
     give("principal_moment_1", first)
@@ -86,7 +89,7 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
     give("elastic_modulus_x_bottom", second_x / extents.bottom)
     give("elastic_modulus_y_left", second_y / extents.left)
     give("elastic_modulus_y_right", second_y / extents.right)
-    own = sums.extents(rect(1.0, axes.angle.value))
+    own = sums.extents(rect(1.0, axes.angle.value), axes.angle.slack)
     give("elastic_modulus_1_positive", first / own.top)
     give("elastic_modulus_1_negative", first / own.bottom)
     give("elastic_modulus_2_positive", second / own.right)
@@ -145,9 +148,13 @@ class _Sums:
         """Integrate about the centroid, axes turned by the unit number `turn`."""
         return self._moments(self._packed.framed(self._centroid, turn))
 
-    def extents(self, turn: complex) -> Extents:
-        """Return the distances from the centroid to the extreme fibres along axes turned by `turn`."""
+    def extents(self, turn: complex, astray: float = 0.0) -> Extents:
+        """Return the distances from the centroid to the extreme fibres along axes turned by `turn`.
+
+        Axes turned too far by up to `astray` [rad] move a fibre by that times its distance from the centroid.
+        """
         packed = self._packed.framed(self._centroid)
-        slack = self.shift + self._wander
-        reach = [Bounded(float(packed.supports(turn * d).max()), slack) for d in (1, 1j, -1, -1j)]
-        return Extents(*reach)
+        reach = [float(packed.supports(turn * d).max()) for d in (1, 1j, -1, -1j)]
+        farthest = hypot(max(reach[0], reach[2]), max(reach[1], reach[3]))
+        slack = self.shift + self._wander + astray * farthest
+        return Extents(*(Bounded(distance, slack) for distance in reach))
