@@ -13,14 +13,15 @@ from hypothesis import strategies as st
 
 from build import analyse_once as analyse
 from build import section_of
-from edgetally.analysis import SectionResult
 from edgetally.curves import Arc, Line
-from edgetally.output.figure import STRIP, round_scale, section_picture
+from edgetally.output.figure import section_picture
 from edgetally.output.mohr import mohr_picture
 from edgetally.output.paper import BOLD, REGULAR, register_fonts, symbol_width, text_width
 from edgetally.output.pens import DRAWING_AXIS, MATERIAL, PRINCIPAL_AXIS, Label, Picture
 from edgetally.output.pens import Path as Stroke
+from edgetally.output.placing import STRIP, round_scale
 from edgetally.output.svg import figure_svg, picture_svg
+from edgetally.results import SectionResult
 from edgetally.section.area import area_properties
 from edgetally.section.connected import ConnectedResult
 

@@ -12,9 +12,10 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis, SectionResult, analyse
+    from edgetally.analysis import analyse
     from edgetally.errors import DrawingError, EdgetallyError, OutlineError, OutputError, UsageError
     from edgetally.findings import Finding
+    from edgetally.results import Analysis, SectionResult
     from edgetally.section.record import Property
 
 __version__ = "0.1.0"
@@ -34,9 +35,10 @@ __all__ = [
 ]
 
 _HOMES = {
-    "analysis": ("Analysis", "SectionResult", "analyse"),
+    "analysis": ("analyse",),
     "errors": ("DrawingError", "EdgetallyError", "OutlineError", "OutputError", "UsageError"),
     "findings": ("Finding",),
+    "results": ("Analysis", "SectionResult"),
     "section.record": ("Property",),
 }
 

@@ -4,21 +4,24 @@ from __future__ import annotations
 
 import sys
 import tempfile
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from contextlib import contextmanager
+from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
 
-from edgetally.errors import UsageError
+from edgetally.errors import EdgetallyError, UsageError
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis
+    from edgetally.findings import Severity
+    from edgetally.results import Analysis
 
 Command = TypeVar("Command", bound=Callable[..., Any])
+Result = TypeVar("Result")
 
-EXIT_OF = {None: 0, "note": 0, "warning": 1, "error": 2}
+EXIT_OF: dict[Severity | None, int] = {None: 0, "note": 0, "warning": 1, "error": 2}
 
 _READING = [
     click.option(
@@ -104,3 +107,39 @@ def copied(drawing: str) -> Iterator[tuple[str | Path, str | None]]:
         copy = Path(folder) / "standard-input.dxf"
         copy.write_bytes(sys.stdin.buffer.read())
         yield copy, "standard input"
+
+
+@dataclass
+class EachDrawing:
+    """Goes through the drawings of one command; of several, one that is refused is said on stderr and passed over.
+
+    `code` is the worst exit code so far.
+    """
+
+    drawings: tuple[str, ...]
+    code: int = 0
+
+    def results(self, work: Callable[[str], Result]) -> Iterator[Result]:
+        """Yield what `work` makes of each drawing. Of a single drawing the refusal is raised."""
+        for drawing in with_progress(self.drawings):
+            try:
+                yield work(drawing)
+            except EdgetallyError as error:
+                if len(self.drawings) == 1:
+                    raise
+                print(f"edgetally: {drawing}: {error}", file=sys.stderr)
+                self.code = 2
+
+    def saw(self, severity: Severity | None) -> None:
+        """Take account of the gravest finding of a drawing."""
+        self.code = max(self.code, EXIT_OF[severity])
+
+
+def with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
+    """Yield the drawings; on a terminal, and where there are several, with a bar on stderr."""
+    if len(drawings) == 1 or not sys.stderr.isatty():
+        yield from drawings
+        return
+    with click.progressbar(drawings, label="drawings", file=sys.stderr) as bar:
+        items: Iterable[str] = bar
+        yield from items

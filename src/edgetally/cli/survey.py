@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 import json
-import sys
+from typing import TYPE_CHECKING
 
 import click
 
-from edgetally.cli.options import copied
-from edgetally.cli.tally import with_progress
-from edgetally.errors import EdgetallyError
+from edgetally.cli.options import EachDrawing, copied
+from edgetally.findings import worst
+
+if TYPE_CHECKING:
+    from edgetally.survey import Survey
 
 
 @click.command(epilog="Example: edgetally survey sample_drawings/bracket.dxf")
@@ -28,20 +30,15 @@ def survey(drawings: tuple[str, ...], units: str | None, as_json: bool) -> int:
     from edgetally.output.survey_text import survey_text
     from edgetally.survey import survey as look
 
-    code = 0
-    for number, drawing in enumerate(with_progress(drawings)):
-        try:
-            with copied(drawing) as (path, name):
-                found = look(path, units=units, name=name)
-        except EdgetallyError as error:
-            if len(drawings) == 1:
-                raise
-            print(f"edgetally: {drawing}: {error}", file=sys.stderr)
-            code = 2
-            continue
+    def looked(drawing: str) -> Survey:
+        with copied(drawing) as (path, name):
+            return look(path, units=units, name=name)
+
+    each = EachDrawing(drawings)
+    for number, found in enumerate(each.results(looked)):
         if as_json:
             print(json.dumps(found.to_dict(), ensure_ascii=False, indent=2 if len(drawings) == 1 else None))
         else:
             print(("\n" if number else "") + survey_text(found))
-        code = max(code, int(any(f.severity == "warning" for f in found.findings)))
-    return code
+        each.saw(worst(found.findings))
+    return each.code

@@ -3,14 +3,12 @@
 from __future__ import annotations
 
 import json
-import sys
-from collections.abc import Iterable, Iterator
 from typing import Any
 
 import click
 
-from edgetally.cli.options import EXIT_OF, analysed, reading_options
-from edgetally.errors import EdgetallyError, UsageError
+from edgetally.cli.options import EachDrawing, analysed, reading_options
+from edgetally.errors import UsageError
 
 
 @click.command(
@@ -31,19 +29,11 @@ def tally(drawings: tuple[str, ...], as_json: bool, as_csv: bool, svg: str | Non
         from edgetally.output.files import check_target
 
         check_target(svg, drawings[0])
-    code = 0
     rows: list[list[str]] = []
     csv_units: set[str] = set()
-    for number, drawing in enumerate(with_progress(drawings)):
-        try:
-            analysis = analysed(drawing, options)
-        except EdgetallyError as error:
-            if len(drawings) == 1:
-                raise
-            print(f"edgetally: {drawing}: {error}", file=sys.stderr)
-            code = 2
-            continue
-        code = max(code, EXIT_OF[analysis.severity])
+    each = EachDrawing(drawings)
+    for number, analysis in enumerate(each.results(lambda drawing: analysed(drawing, options))):
+        each.saw(analysis.severity)
         if as_json:
             print(json.dumps(analysis.to_dict(), ensure_ascii=False, indent=2 if len(drawings) == 1 else None))
         elif as_csv:
@@ -63,7 +53,7 @@ def tally(drawings: tuple[str, ...], as_json: bool, as_csv: bool, svg: str | Non
         from edgetally.output.table import csv_header, csv_text
 
         print(csv_text([csv_header(csv_units.pop()), *rows]), end="")
-    return code
+    return each.code
 
 
 def _write_svg(svg: str, analysis: Any, symbols: Any) -> None:
@@ -73,13 +63,3 @@ def _write_svg(svg: str, analysis: Any, symbols: Any) -> None:
     if len(analysis.sections) > 1:
         raise UsageError("--svg draws one section: say which with --pick, or --together")
     write_whole(svg, figure_svg(analysis.sections[0], symbols).encode())
-
-
-def with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
-    """Yield the drawings; on a terminal, and where there are several, with a bar on stderr."""
-    if len(drawings) == 1 or not sys.stderr.isatty():
-        yield from drawings
-        return
-    with click.progressbar(drawings, label="drawings", file=sys.stderr) as bar:
-        items: Iterable[str] = bar
-        yield from items

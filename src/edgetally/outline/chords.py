@@ -77,7 +77,8 @@ def _run(loop: Loop, first: int, count: int, turn: np.ndarray, length: np.ndarra
 
 def chord_findings(regions: Sequence[Region], unit: str) -> list[Finding]:
     """Return one finding for all chopped arcs of the regions that make a section, none where there are none."""
-    arcs = [arc for region in regions for loop in region.loops for arc in chopped_arcs(loop)]
+    chopped = [(loop, arcs) for region in regions for loop in region.loops if (arcs := chopped_arcs(loop))]
+    arcs = [arc for _, found in chopped for arc in found]
     if not arcs:
         return []
     lost, area = sum(arc.area for arc in arcs), sum(region.area for region in regions)
@@ -90,5 +91,5 @@ def chord_findings(regions: Sequence[Region], unit: str) -> list[Finding]:
         f"{place(first.start)}; export true arcs if they are meant"
     )
     severity = "warning" if sum(abs(arc.area) for arc in arcs) > HARMLESS * area else "note"
-    sources = [loop.curves[0].source for region in regions for loop in region.loops if chopped_arcs(loop)]
+    sources = [loop.curves[0].source for loop, _ in chopped]
     return [Finding("chopped-arc", severity, text, at(first.start), handles(sources))]  # type: ignore[arg-type]

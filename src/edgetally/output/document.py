@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 from edgetally import __version__
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis, SectionResult
+    from edgetally.results import Analysis, SectionResult
 
 FORMAT = "edgetally.tally/1"
 

@@ -8,7 +8,6 @@ from __future__ import annotations
 
 from cmath import rect
 from collections.abc import Iterable
-from dataclasses import dataclass
 from math import degrees, floor, inf, log10, pi
 from typing import TYPE_CHECKING
 
@@ -19,7 +18,6 @@ from edgetally.output.pens import (
     DRAWING_AXIS,
     HOLLOW_MARK,
     INK,
-    MATERIAL,
     MUTED,
     OPEN_MARK,
     PRINCIPAL_AXIS,
@@ -36,49 +34,19 @@ from edgetally.output.pens import (
     polygon,
     stroke,
 )
+from edgetally.output.placing import STRIP, Placing
 from edgetally.output.symbols import AXES, SymbolSet
 from edgetally.units import length_factor
 
 if TYPE_CHECKING:
-    from edgetally.analysis import SectionResult
+    from edgetally.results import SectionResult
 
-POINTS_PER_MM = 72.0 / 25.4
-MARGIN = 34.0
-"""Room [pt] around the section for the ends of the axes and their labels."""
-STRIP = 34.0
-"""Room [pt] below for the scale bar and the key of the marks."""
 NO_ARC = 1.0
 """Below this angle [degrees] the arc from x to axis 1 would be smaller than its own arrowhead."""
 SAME_CENTRE = 1e-3
 """A shear centre nearer to the centroid than this share of the section's size is not marked: it would cover it."""
 SAME_FIBRE = 2.0
 """Where the principal axes are turned by less than this [degrees], their extreme fibres are not marked twice."""
-
-
-@dataclass(frozen=True, slots=True)
-class Scale:
-    """A scale of ISO 5455, `paper`:`real`, one of them 1."""
-
-    paper: float
-    real: float
-
-    @property
-    def factor(self) -> float:
-        return self.paper / self.real
-
-    def __str__(self) -> str:
-        return f"{self.paper:g}:{self.real:g}"
-
-
-def round_scale(most: float) -> Scale:
-    """Return the largest of 1, 2, 5 · 10ⁿ : 1 and 1 : 1, 2, 5 · 10ⁿ that is not above `most`."""
-    decade = 10.0 ** floor(log10(most))
-    enlarged = max((s * decade for s in (1.0, 2.0, 5.0) if s * decade <= most * (1 + 1e-9)), default=decade)
-    if enlarged >= 1.0:
-        return Scale(round(enlarged), 1)
-    reduced = min(s for k in (-1, 0, 1) for s in (1 / decade * 10.0**k, 2 / decade * 10.0**k, 5 / decade * 10.0**k)
-                  if s >= 1.0 and 1 / s <= most * (1 + 1e-9))  # fmt: skip
-    return Scale(1, round(reduced))
 
 
 def section_picture(section: SectionResult, width: float, height: float, symbols: SymbolSet = "plain") -> Picture:
@@ -93,26 +61,15 @@ class _Figure:
         self.letters = AXES[symbols]
         self.theta = section.result.axes.angle.value
         self.arbitrary = section.result.axes.arbitrary
-        x0, y0, x1, y1 = section.section.packed.box
         self.shear_centre = _shear_centre(section)
-        if self.shear_centre is not None:  # the scale leaves room for it
-            x0, x1 = min(x0, self.shear_centre.real), max(x1, self.shear_centre.real)
-            y0, y1 = min(y0, self.shear_centre.imag), max(y1, self.shear_centre.imag)
-        self.mm = length_factor(section.section.unit, "mm")
-        room_x, room_y = width - 2 * MARGIN, height - STRIP - 2 * MARGIN
-        wanted = [room / (extent * self.mm * POINTS_PER_MM) for room, extent in ((room_x, x1 - x0), (room_y, y1 - y0))]
-        self.scale = round_scale(min(wanted))
-        self.points = self.scale.factor * self.mm * POINTS_PER_MM  # paper points for one unit of the section
-        middle = complex(0.5 * (x0 + x1), 0.5 * (y0 + y1))
-        self.shift = complex(0.5 * width, STRIP + 0.5 * (height - STRIP)) - middle * self.points
+        also = () if self.shear_centre is None else (self.shear_centre,)
+        self.placing = Placing.of(section.section, width, height, also=also)
+        self.paper = self.placing.paper
         self.centre = self.paper(section.result.centroid)
-
-    def paper(self, z: complex) -> complex:
-        return z * self.points + self.shift
 
     def picture(self) -> Picture:
         items: list[Item] = [
-            self._material(),
+            self.placing.material(),
             *self._axes(),
             *self._extreme_fibres(),
             *centroid_mark(self.centre),
@@ -121,13 +78,6 @@ class _Figure:
             *self._key(),
         ]
         return Picture(self.width, self.height, tuple(items))
-
-    def _material(self) -> Path:
-        runs = tuple(
-            tuple(curve.moved(complex(self.points), self.shift) for curve in loop.curves)
-            for loop in self.section.section.loops
-        )
-        return Path(runs, MATERIAL, closed=True)
 
     # ------------------------------------------------------------------ axes
     def _border(self, direction: complex) -> complex:
@@ -205,7 +155,7 @@ class _Figure:
     # ------------------------------------------------------------------ strip
     def _scale_bar(self) -> Iterable[Item]:
         unit = self.section.out_unit
-        per_unit = self.points * length_factor(unit, self.section.section.unit)
+        per_unit = self.placing.points * length_factor(unit, self.section.section.unit)
         most = 120.0 / per_unit
         decade = 10.0 ** floor(log10(most))
         real = max(s * decade for s in (1.0, 2.0, 5.0) if s * decade <= most)
@@ -217,7 +167,7 @@ class _Figure:
         yield polygon(
             [complex(left, y), complex(left + length, y), complex(left + length, y + 3), complex(left, y + 3)], THIN
         )
-        text = f"{real:g} {unit}   scale {self.scale}"
+        text = f"{real:g} {unit}   scale {self.placing.scale}"
         yield Label(complex(left + length + 5.0, y - 1.2), text, 7.5)
 
     def _key(self) -> Iterable[Item]:

@@ -11,7 +11,7 @@ from edgetally.drawing.markup import Mark, markup_dxf
 from edgetally.outline.words import length_text
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis, SectionResult
+    from edgetally.results import Analysis, SectionResult
 
 OVERHANG = 0.62
 """An axis is drawn from the centroid to this share of the section's size on both sides."""

@@ -34,7 +34,7 @@ from edgetally.output.pens import (
 from edgetally.output.symbols import SymbolSet, symbol_of
 
 if TYPE_CHECKING:
-    from edgetally.analysis import SectionResult
+    from edgetally.results import SectionResult
 
 CIRCLE = Style(width=0.8)
 ROOM = 30.0

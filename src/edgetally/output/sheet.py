@@ -11,11 +11,12 @@ from reportlab.lib.pagesizes import A4, LETTER
 from reportlab.pdfgen.canvas import Canvas
 
 from edgetally import __version__
-from edgetally.output.figure import POINTS_PER_MM, section_picture
+from edgetally.output.figure import section_picture
 from edgetally.output.mohr import mohr_picture
 from edgetally.output.numbers import value_text
 from edgetally.output.paper import BOLD, REGULAR, PdfPen, fitted, printable, register_fonts, text_width, wrapped
 from edgetally.output.pens import ACCENT, INK, MUTED, Colour, draw
+from edgetally.output.placing import POINTS_PER_MM
 from edgetally.output.symbols import AXES, KEYS, SymbolSet, symbol_of
 from edgetally.output.torsion_words import torsion_notes, torsion_rows
 from edgetally.output.warping import warping_picture
@@ -24,8 +25,8 @@ from edgetally.section.connected import KEYS as CONNECTED
 from edgetally.section.record import Property
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis, SectionResult
     from edgetally.findings import Finding
+    from edgetally.results import Analysis, SectionResult
     from edgetally.section.solution import TorsionSolution
 
 PAGES = {"a4": A4, "letter": LETTER}
@@ -84,7 +85,8 @@ class _Sheet:
 
     # ------------------------------------------------------------------ pages
     def _section(self, section: SectionResult) -> None:
-        self._open_page(section)
+        name = f"Section {section.name}" if len(self.analysis.sections) > 1 else self.analysis.drawing.file
+        self._open_page(name)
         y = self._head(section)
         foot = self._foot(section)
         table = self._table_height(section)
@@ -109,10 +111,7 @@ class _Sheet:
 
     def _torsion_page(self, section: SectionResult, solution: TorsionSolution) -> None:
         """The second page: the warping along the outline, and what torsion and shear give, with errors."""
-        self.number += 1
-        mark = f"page{self.number}"
-        self.canvas.bookmarkPage(mark)
-        self.canvas.addOutlineEntry("Torsion and shear", mark, level=1)
+        self._open_page("Torsion and shear", level=1)
         y = self._head(section)
         foot = self._foot(section)
         rows = torsion_rows(section, solution, self.symbols)
@@ -144,18 +143,14 @@ class _Sheet:
     def _wrapped_note(self, text: str) -> list[str]:
         return wrapped(text, SMALL, self.right - self.left)
 
-    def _open_page(self, section: SectionResult) -> None:
+    def _open_page(self, title: str, level: int = 0) -> None:
         self.number += 1
         mark = f"page{self.number}"
         self.canvas.bookmarkPage(mark)
-        name = f"Section {section.name}" if len(self.analysis.sections) > 1 else self.analysis.drawing.file
-        self.canvas.addOutlineEntry(name, mark)
+        self.canvas.addOutlineEntry(title, mark, level=level)
 
     def _continued(self, section: SectionResult, rest: list[tuple[str, str, bool]]) -> list[tuple[str, str, bool]]:
-        self.number += 1
-        mark = f"page{self.number}"
-        self.canvas.bookmarkPage(mark)
-        self.canvas.addOutlineEntry("Findings, continued", mark, level=1)
+        self._open_page("Findings, continued", level=1)
         y = self._head(section)
         foot = self._foot(section)
         y = self._heading("Findings, continued", self.left, self.right, y - 10.0)

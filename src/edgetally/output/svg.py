@@ -11,7 +11,7 @@ from edgetally.output.pens import Colour, Label, Path, Picture, Style, cubics, d
 from edgetally.output.symbols import SymbolSet
 
 if TYPE_CHECKING:
-    from edgetally.analysis import SectionResult
+    from edgetally.results import SectionResult
 
 FONT = "DejaVu Sans Condensed, DejaVu Sans, sans-serif"
 SUBSCRIPT = 0.72

@@ -10,7 +10,6 @@ from __future__ import annotations
 from typing import Literal, NamedTuple
 
 SymbolSet = Literal["plain", "en", "us"]
-SETS: tuple[SymbolSet, ...] = ("plain", "en", "us")
 
 
 class AxisLetters(NamedTuple):

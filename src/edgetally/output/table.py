@@ -8,12 +8,13 @@ from collections import defaultdict
 from typing import TYPE_CHECKING
 
 from edgetally.findings import RANK, Finding
+from edgetally.output.blocks import whole_part
 from edgetally.output.numbers import value_text
 from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
 from edgetally.output.words import CAUTION, described, evidence, header_fields
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis, SectionResult
+    from edgetally.results import Analysis, SectionResult
 
 LABEL = 28
 SHORT_KEYS = (
@@ -55,22 +56,15 @@ def property_lines(section: SectionResult, symbols: SymbolSet, keys: tuple[str, 
             )
     symbol_width = max(len(row[0]) for row in rows)
     name_width = max(len(row[1]) for row in rows)
-    before = max(len(_whole(row[2])) for row in rows)
-    after = max(len(row[2]) - len(_whole(row[2])) for row in rows)
+    before = max(len(whole_part(row[2])) for row in rows)
+    after = max(len(row[2]) - len(whole_part(row[2])) for row in rows)
     head = f"  {'':<{symbol_width}}  {'':<{name_width}}  {'':<{before + after}}  {'unit':<5} relative error"
     lines = [head]
     for symbol, name, value, unit, error in rows:
-        number = _whole(value).rjust(before) + value[len(_whole(value)) :].ljust(after)
+        number = whole_part(value).rjust(before) + value[len(whole_part(value)) :].ljust(after)
         bound = f"{error:.0e}" if error else ""
         lines.append(f"  {symbol:<{symbol_width}}  {name:<{name_width}}  {number}  {unit:<5} {bound}".rstrip())
     return lines
-
-
-def _whole(number: str) -> str:
-    for k, c in enumerate(number):
-        if c in ".e":
-            return number[:k]
-    return number
 
 
 def finding_lines(findings: tuple[Finding, ...], analysis: Analysis) -> list[str]:

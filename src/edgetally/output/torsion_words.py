@@ -11,7 +11,7 @@ from edgetally.section.connected import KEYS
 from edgetally.units import Unit, length_factor
 
 if TYPE_CHECKING:
-    from edgetally.analysis import SectionResult
+    from edgetally.results import SectionResult
     from edgetally.section.solution import TorsionSolution
 
 Row = tuple[str, str, str, str, str]

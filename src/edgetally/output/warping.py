@@ -1,7 +1,7 @@
 """The picture of the warping: ω about the shear centre as a signed band along the outline.
 
 The band stands outside the material, its height in proportion to |ω|: filled where ω is positive, open where negative.
-The largest values on either side are marked, as are the places of the largest shear stress.
+The place of the largest shear stress of torsion is marked, and the sharp corners where the stress has no bound.
 """
 
 from __future__ import annotations
@@ -12,12 +12,10 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from edgetally.curves import Line
-from edgetally.output.figure import POINTS_PER_MM, round_scale, shear_centre_mark
+from edgetally.output.figure import shear_centre_mark
 from edgetally.output.pens import (
     ACCENT,
     INK,
-    MATERIAL,
     MUTED,
     Item,
     Label,
@@ -25,19 +23,18 @@ from edgetally.output.pens import (
     Picture,
     Style,
     disc,
+    polygon,
     stroke,
 )
-from edgetally.units import length_factor
+from edgetally.output.placing import Placing
 
 if TYPE_CHECKING:
-    from edgetally.analysis import SectionResult
+    from edgetally.results import SectionResult
     from edgetally.section.solution import TorsionSolution, WarpingLine
 
 POSITIVE = Style(width=0.4, colour=ACCENT, fill=(0.80, 0.68, 0.75))
 NEGATIVE = Style(width=0.5, colour=ACCENT, fill=(1.0, 1.0, 1.0))
-THIN_ACCENT = Style(width=0.6, colour=ACCENT)
 PEAK = Style(width=0.9, colour=INK)
-MARGIN = 34.0
 STRIP = 30.0
 BAND = 22.0
 """Height [pt] of the band where |ω| is largest."""
@@ -52,37 +49,20 @@ class _Warping:
     def __init__(self, section: SectionResult, solution: TorsionSolution, width: float, height: float) -> None:
         self.section, self.solution = section, solution
         self.width, self.height = width, height
-        x0, y0, x1, y1 = section.section.packed.box
-        centre = solution.shear_centre
-        x0, x1, y0, y1 = min(x0, centre.real), max(x1, centre.real), min(y0, centre.imag), max(y1, centre.imag)
-        mm = length_factor(section.section.unit, "mm") * POINTS_PER_MM
-        room = (width - 2 * MARGIN, height - STRIP - 2 * MARGIN)
-        self.scale = round_scale(min(room[0] / ((x1 - x0) * mm), room[1] / ((y1 - y0) * mm)))
-        self.points = self.scale.factor * mm
-        middle = complex(0.5 * (x0 + x1), 0.5 * (y0 + y1))
-        self.shift = complex(0.5 * width, STRIP + 0.5 * (height - STRIP)) - middle * self.points
+        self.placing = Placing.of(section.section, width, height, strip=STRIP, also=[solution.shear_centre])
+        self.paper = self.placing.paper
         self.largest = max(float(np.abs(line.omega).max()) for line in solution.warping)
-
-    def paper(self, z: complex) -> complex:
-        return z * self.points + self.shift
 
     def picture(self) -> Picture:
         bands = [item for line in self.solution.warping for item in self._bands(line)]
-        items: list[Item] = [*bands, self._material(), *self._centres(), *self._peaks(), *self._key()]
+        items: list[Item] = [*bands, self.placing.material(), *self._centres(), *self._peaks(), *self._key()]
         return Picture(self.width, self.height, tuple(items))
-
-    def _material(self) -> Path:
-        runs = tuple(
-            tuple(curve.moved(complex(self.points), self.shift) for curve in loop.curves)
-            for loop in self.section.section.loops
-        )
-        return Path(runs, MATERIAL, closed=True)
 
     def _bands(self, line: WarpingLine) -> Iterable[Item]:
         """One filled piece for each run of one sign; at a corner, where the normal turns, a new piece begins."""
         if self.largest == 0.0:
             return
-        z = np.append(line.points, line.points[0]) * self.points + self.shift
+        z = self.placing.points * np.append(line.points, line.points[0]) + self.placing.shift
         omega = np.append(line.omega, line.omega[0])
         step = np.diff(z)
         normal = -1j * step / np.maximum(np.abs(step), 1e-300)
@@ -112,8 +92,7 @@ class _Warping:
         at_nodes = np.concatenate([normal[:1], 0.5 * (normal[1:] + normal[:-1]), normal[-1:]])
         top = z + height * at_nodes
         corners = [complex(p) for p in (*z, *top[::-1])]
-        lines = tuple(Line(a, b) for a, b in zip(corners, [*corners[1:], corners[0]], strict=True))
-        return Path((lines,), POSITIVE if positive else NEGATIVE, closed=True)
+        return polygon(corners, POSITIVE if positive else NEGATIVE)
 
     def _centres(self) -> Iterable[Item]:
         yield from shear_centre_mark(self.paper(self.solution.shear_centre))
@@ -129,8 +108,7 @@ class _Warping:
         x, y = 8.0, 18.0
         for style, words in ((POSITIVE, "ω > 0"), (NEGATIVE, "ω < 0")):
             corners = [complex(x, y - 1.0), complex(x + 12.0, y - 1.0), complex(x + 12.0, y + 5.0), complex(x, y + 5.0)]
-            lines = tuple(Line(a, b) for a, b in zip(corners, [*corners[1:], corners[0]], strict=True))
-            yield Path((lines,), style, closed=True)
+            yield polygon(corners, style)
             yield Label(complex(x + 15.0, y), words, 7.0, colour=MUTED)
             x += 48.0
         yield from shear_centre_mark(complex(x + 4.0, y + 2.5), 2.8)
@@ -144,4 +122,4 @@ class _Warping:
             yield stroke(complex(x + 4.0, y), complex(x + 4.0, y + 5.0), PEAK)
             yield Label(complex(x + 11.0, y), "sharp re-entrant corner", 7.0, colour=MUTED)
             x += 110.0
-        yield Label(complex(x, y), f"scale {self.scale}", 7.0)
+        yield Label(complex(x, y), f"scale {self.placing.scale}", 7.0)

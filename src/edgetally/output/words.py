@@ -10,7 +10,7 @@ from edgetally.output.symbols import SymbolSet, name_of
 from edgetally.units import Unit
 
 if TYPE_CHECKING:
-    from edgetally.analysis import Analysis
+    from edgetally.results import Analysis
 
 CAUTION = (
     "The results describe the outline as drawn. They are no proof of strength, stability or fitness: check them "
