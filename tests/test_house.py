@@ -26,6 +26,7 @@ ROOMS = [
     "survey",
     "compare",
     "analysis",
+    "composing",
     "doubts",
     "measuring",
     "results",

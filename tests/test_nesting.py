@@ -15,7 +15,7 @@ from hypothesis import strategies as st
 from build import curves_of
 from edgetally.curves import Arc, Bezier, Curve, Line
 from edgetally.outline.assembly import assemble
-from edgetally.outline.nesting import _turning, nest
+from edgetally.outline.nesting import nest, turning_about
 from edgetally.outline.records import Loop, Outline, Region
 from edgetally.outline.senses import rough_areas
 
@@ -84,7 +84,7 @@ def test_looking_at_runs_of_curves_decides_as_looking_at_each(bulge: float) -> N
     near = np.array(corners[:200]) * chance.choice([1 - 1e-7, 1 + 1e-7], 200)
     points = np.concatenate([points, near])
     plain = loop.packed.turning(points)
-    assert _turning(loop, points) == pytest.approx(plain, abs=1e-9)
+    assert turning_about(loop, points) == pytest.approx(plain, abs=1e-9)
     assert {0.0, 1.0} <= set(np.round(plain / (2 * math.pi)))
 
 

@@ -6,6 +6,7 @@ import math
 from collections.abc import Sequence
 from pathlib import Path
 
+from edgetally.composing import account_of, assemble_parts, compose, materials_of, read_parts
 from edgetally.curves import Packed
 from edgetally.doubts import hatch_findings, join_finding, size_finding, with_skips
 from edgetally.drawing.loading import load
@@ -31,6 +32,7 @@ def analyse(
     out_units: str | None = None,
     density: float | str | None = None,
     poisson: float = 0.3,
+    material: Sequence[str] = (),
     torsion: bool = True,
     name: str | None = None,
 ) -> Analysis:
@@ -47,6 +49,8 @@ def analyse(
     out_units : `mm`, `cm`, `m` or `in`, the unit of the results; the drawing's own without it.
     density : kg/m³, or `steel`, `aluminium`, `stainless`; adds the mass per length.
     poisson : Poisson's ratio for the shear areas, from 0 to 0.5.
+    material : `LAYER=E[,DENSITY]` for each part of a composite section, E in MPa or with its unit, as
+        `STEEL=210GPa,7850`; the sections are then the parts alone, and torsion and shear are not solved.
     torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
     name : the name that the result gives for the file, where `path` is a copy of it.
 
@@ -66,39 +70,55 @@ def analyse(
             "outline in the drawing"
         )
     kg_per_m3 = _density(density)
+    materials = materials_of(material, _density, layer=layer, select=select, density=density)
     loaded = load(path)
     drawing = DrawingFile(loaded)
     findings: list[Finding] = [*loaded.findings]
-    layers = _layers(drawing, layer, gap, gap_unit, units, findings)
-    reading = drawing.read(layers)
+    if materials:
+        materials, readings, hidden = read_parts(drawing, materials)
+        reading = account_of(drawing, readings)
+        findings += hidden
+    else:
+        layers = _layers(drawing, layer, gap, gap_unit, units, findings)
+        reading = drawing.read(layers)
     findings += reading.findings
     unit, unit_source = _unit(drawing, units, reading, findings)
     findings += drawing.dimension_findings(scale)
     drawn_gap = gap * length_factor(gap_unit, unit)
-    try:
-        outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
-    except OutlineError as error:
-        raise with_skips(error, reading) from None
+    if materials:
+        outline, chosen, hatched = assemble_parts(readings, drawn_gap, unit)
+    else:
+        try:
+            outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
+        except OutlineError as error:
+            raise with_skips(error, reading) from None
+        hatched = hatch_findings(reading, outline, drawn_gap, unit)
+        several = len(outline.regions) > 1 and select not in ("each", "together")
+        chosen = choose(outline.regions, select, unit, drawing.labels() if several else ())
     findings += outline.findings
     findings += [join_finding(join, unit) for join in outline.joins]
-    findings += hatch_findings(reading, outline, drawn_gap, unit)
-    several = len(outline.regions) > 1 and select not in ("each", "together")
-    chosen = choose(outline.regions, select, unit, drawing.labels() if several else ())
+    findings += hatched
     for number in outline.islands:
         x0, y0, _, _ = outline.regions[number].box
         text = f"part {number + 1} lies inside a void of another part"
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
     wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None)
+    each_wanted = [Wanted(density=m.density, poisson=None) for m in materials] or [wanted] * len(chosen)
     sections = tuple(
-        measure(section_name, regions, unit, scale=scale, out_unit=out_unit, wanted=wanted)
-        for section_name, regions in chosen
+        measure(section_name, regions, unit, scale=scale, out_unit=out_unit, wanted=own)
+        for (section_name, regions), own in zip(chosen, each_wanted, strict=True)
     )
-    findings += [f for f in (size_finding(s, unit_source) for s in sections) if f is not None][:1]
+    composite = None
+    if materials:
+        composite, said = compose(materials, sections, out_unit)
+        findings.append(said)
+    wholes = [composite.whole] if composite else [s.section for s in sections]
+    findings += [f for f in (size_finding(whole, unit_source) for whole in wholes) if f is not None][:1]
     record = DrawingRecord(
         name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
     )
-    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson)
+    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson, composite)
 
 
 def _density(density: float | str | None) -> float | None:

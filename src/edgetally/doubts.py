@@ -10,7 +10,7 @@ from edgetally.outline.assembly import assemble
 from edgetally.outline.joining import DEFAULT_GAP_MM
 from edgetally.outline.records import Join, Outline, Region
 from edgetally.outline.words import at, handles, length_text, place
-from edgetally.results import SectionResult
+from edgetally.section.record import Section
 from edgetally.units import MM_PER
 
 SMALLEST_MM, LARGEST_MM = 6.0, 5000.0
@@ -19,15 +19,15 @@ SAME_AREA = 1e-3
 """A hatch fills what the outline encloses to this share: CAD programs store its arcs with fewer digits."""
 
 
-def size_finding(section: SectionResult, unit_source: str) -> Finding | None:
+def size_finding(section: Section, unit_source: str) -> Finding | None:
     """Doubt a unit that only the header names where the section would be of a size that few sections have."""
-    size = section.section.size
-    mm = size * MM_PER[section.section.unit]
+    size = section.size
+    mm = size * MM_PER[section.unit]
     if unit_source != "header" or SMALLEST_MM <= mm <= LARGEST_MM:
         return None
-    others = ", ".join(f"{size * MM_PER[u]:.4g} mm if it is {u}" for u in MM_PER if u != section.section.unit)
+    others = ", ".join(f"{size * MM_PER[u]:.4g} mm if it is {u}" for u in MM_PER if u != section.unit)
     text = (
-        f"by the header's unit, {section.section.unit}, the section would measure {mm:.4g} mm, which few sections do; "
+        f"by the header's unit, {section.unit}, the section would measure {mm:.4g} mm, which few sections do; "
         f"it would measure {others}: pass the right one with --units"
     )
     return Finding("units-suspect", "warning", text)

@@ -11,6 +11,7 @@ from edgetally.findings import Finding, Severity, worst
 from edgetally.outline.records import Outline, Region
 from edgetally.section.accuracy import WARPING_SCALE
 from edgetally.section.area import AreaResult
+from edgetally.section.composite import CompositeResult
 from edgetally.section.connected import ConnectedResult
 from edgetally.section.record import Property, Section
 from edgetally.units import length_factor
@@ -103,6 +104,8 @@ class Analysis:
     out_unit: str
     density: float | None
     poisson: float
+    composite: CompositeResult | None = None
+    """Of parts of several materials, which `sections` then hold one by one; None without materials."""
 
     @property
     def all_findings(self) -> tuple[Finding, ...]:

@@ -16,6 +16,19 @@ MM_PER: dict[str, float] = {"mm": 1.0, "cm": 10.0, "m": 1000.0, "in": 25.4, "ft"
 # kg/m³: nominal values of EN 1991-1-1 and EN 1999-1-1, and EN 10088-1 for 1.4301 (from memory)
 DENSITIES: dict[str, float] = {"steel": 7850.0, "aluminium": 2700.0, "stainless": 7900.0}
 
+LBF = 4.4482216152605
+"""Newtons in a pound-force, exact by definition (the pound of 1959 and standard gravity)."""
+
+# what a force is given in where lengths are in each unit, and its newtons
+FORCES: dict[str, tuple[str, float]] = {
+    "mm": ("N", 1.0), "cm": ("kN", 1e3), "m": ("kN", 1e3), "in": ("lbf", LBF), "ft": ("lbf", LBF),
+}  # fmt: skip
+
+MPA_PER: dict[str, float] = {
+    "Pa": 1e-6, "kPa": 1e-3, "MPa": 1.0, "GPa": 1e3, "N/mm2": 1.0, "kN/cm2": 10.0, "kN/mm2": 1e3,
+    "psi": LBF / 645.16, "ksi": 1e3 * LBF / 645.16,
+}  # fmt: skip
+
 # DXF reference, header variable $INSUNITS. Only the first group is a unit that a section is drawn in.
 INSUNITS: dict[int, str] = {1: "in", 2: "ft", 4: "mm", 5: "cm", 6: "m"}
 INSUNITS_OTHER: dict[int, str] = {
@@ -51,9 +64,18 @@ class Unit:
         """The unit as it is printed: mm⁴, °, kg/m."""
         if self.base == "deg":
             return "°"
-        return self.base if self.power == 1 else self.base + str(self.power).translate(_SUPERSCRIPT)
+        base = _EXPONENT.sub(lambda power: power[1].translate(_SUPERSCRIPT), self.base).replace("*", "·")
+        return base if self.power == 1 else base + str(self.power).translate(_SUPERSCRIPT)
 
 
+def force_unit(length: str, power: int = 0) -> Unit:
+    """Return the unit of a force times a power of a length, as `N*mm^2`, where lengths are in `length`."""
+    force = FORCES[length][0]
+    return Unit(f"{force}*{Unit(length, power)}" if power else force)
+
+
+_EXPONENT = re.compile(r"\^(-?\d+)")
+_STRESS = re.compile(r"\s*([-+]?[0-9]*[.]?[0-9]+(?:[eE][-+]?[0-9]+)?)\s*([A-Za-z][A-Za-z/^²2]*)?\s*")
 _LENGTH = re.compile(r"\s*([-+]?[0-9]*[.]?[0-9]+(?:[eE][-+]?[0-9]+)?)\s*([A-Za-z]*)\s*")
 
 
@@ -69,3 +91,20 @@ def parse_length(text: str) -> tuple[float, str]:
     if not math.isfinite(value) or value < 0:
         raise UsageError(f"length {text!r} must be finite and not negative")
     return value, match.group(2)
+
+
+def parse_modulus(text: str) -> float:
+    """Read a modulus of elasticity, as `210GPa`, a plain number in MPa, and return it in MPa.
+
+    Raises UsageError where it is not understood, not finite or not positive.
+    """
+    match = _STRESS.fullmatch(text)
+    unit = ((match.group(2) if match else None) or "MPa").replace("^", "").replace("²", "2")
+    if match is None or unit not in MPA_PER:
+        raise UsageError(
+            f"modulus {text!r} is not understood: write a number in MPa, or with one of {', '.join(MPA_PER)}, as 210GPa"
+        )
+    value = float(match.group(1)) * MPA_PER[unit]
+    if not (math.isfinite(value) and value > 0):
+        raise UsageError(f"modulus {text!r} must be finite and greater than 0")
+    return value

@@ -71,6 +71,15 @@ def reading_options(command: Command) -> Command:
     return command
 
 
+material_option = click.option(
+    "--material",
+    multiple=True,
+    metavar="LAYER=E[,DENSITY]",
+    help="A part of a composite section: its layer, its modulus in MPa or with its unit, and its density, as "
+    "STEEL=210GPa,7850; repeatable.",
+)
+
+
 def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
     """Turn the three options into what `analyse` takes. Raises UsageError where they contradict."""
     given = [name for name, on in (("--each", each), ("--together", together), ("--pick", pick is not None)) if on]
@@ -92,6 +101,7 @@ def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
         "out_units": options["out_units"],
         "density": options["density"],
         "poisson": options["poisson"],
+        "material": list(options.get("material", ())),
     }
     with copied(drawing) as (path, name):
         return analyse(path, name=name, **settings)

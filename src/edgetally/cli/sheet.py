@@ -7,7 +7,7 @@ from typing import Any
 
 import click
 
-from edgetally.cli.options import EXIT_OF, analysed, reading_options
+from edgetally.cli.options import EXIT_OF, analysed, material_option, reading_options
 from edgetally.errors import UsageError
 
 
@@ -17,6 +17,7 @@ from edgetally.errors import UsageError
 @click.argument("drawing", metavar="DRAWING")
 @click.option("-o", "output", type=click.Path(), required=True, metavar="OUT.pdf", help="Where the sheet goes.")
 @reading_options
+@material_option
 @click.option("--title", default="", help="Title in the head of the page.")
 @click.option("--reference", default="", help="Reference in the head of the page.")
 @click.option("--prepared", default="", help="Who prepared it.")

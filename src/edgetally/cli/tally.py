@@ -7,7 +7,7 @@ from typing import Any
 
 import click
 
-from edgetally.cli.options import EachDrawing, analysed, reading_options
+from edgetally.cli.options import EachDrawing, analysed, material_option, reading_options
 from edgetally.errors import UsageError
 
 
@@ -16,6 +16,7 @@ from edgetally.errors import UsageError
 )
 @click.argument("drawings", nargs=-1, required=True, metavar="DRAWING...")
 @reading_options
+@material_option
 @click.option("--json", "as_json", is_flag=True, help="The JSON document; of several drawings one a line.")
 @click.option("--csv", "as_csv", is_flag=True, help="A table with one row a section.")
 @click.option("--svg", type=click.Path(), metavar="FILE", help="Write the figure of the section too.")
@@ -52,7 +53,8 @@ def tally(drawings: tuple[str, ...], as_json: bool, as_csv: bool, svg: str | Non
             raise UsageError("the drawings have different units: say with --out-units which the table is to have")
         from edgetally.output.table import csv_header, csv_text
 
-        print(csv_text([csv_header(csv_units.pop()), *rows]), end="")
+        header = csv_header(csv_units.pop(), composite=len({len(row) for row in rows}) > 1)
+        print(csv_text([header, *(row + [""] * (len(header) - len(row)) for row in rows)]), end="")
     return each.code
 
 

@@ -41,7 +41,7 @@ def nest(loops: Sequence[Loop], areas: NDArray[np.float64] | None = None) -> tup
             candidates.setdefault(o, []).append(i)
     around: list[list[int]] = [[] for _ in loops]
     for o, inside in candidates.items():
-        turning = _turning(loops[o], witness[inside])
+        turning = turning_about(loops[o], witness[inside])
         for i, angle in zip(inside, turning.tolist(), strict=True):
             if abs(angle) > np.pi:
                 around[i].append(o)
@@ -66,7 +66,7 @@ def nest(loops: Sequence[Loop], areas: NDArray[np.float64] | None = None) -> tup
     return regions, [number for number, k in enumerate(tops) if around[k]]
 
 
-def _turning(loop: Loop, points: NDArray[np.complex128]) -> NDArray[np.float64]:
+def turning_about(loop: Loop, points: NDArray[np.complex128]) -> NDArray[np.float64]:
     """Return what `loop.packed.turning(points)` does, without looking from every point at every curve.
 
     Seen from outside its box, a run of curves turns as the chord from its start to its end does. With runs of √n of the

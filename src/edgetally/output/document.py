@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from edgetally import __version__
+from edgetally.output.composite_words import composite_document
 
 if TYPE_CHECKING:
     from edgetally.results import Analysis, SectionResult
@@ -39,6 +40,7 @@ def document(analysis: Analysis) -> dict[str, Any]:
         },
         "sections": [_section(section) for section in analysis.sections],
         "findings": [finding.to_dict() for finding in analysis.findings],
+        **({"composite": composite_document(analysis.composite)} if analysis.composite else {}),
     }
 
 

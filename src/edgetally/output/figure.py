@@ -8,41 +8,33 @@ from __future__ import annotations
 
 from cmath import rect
 from collections.abc import Iterable
-from math import degrees, floor, inf, log10, pi
+from math import degrees, floor, log10, pi
 from typing import TYPE_CHECKING
 
 from edgetally.curves import Arc, Curve, Line
+from edgetally.output.axes import AxesOnPaper
 from edgetally.output.pens import (
-    ACCENT,
-    ACCENT_MARK,
-    DRAWING_AXIS,
     HOLLOW_MARK,
-    INK,
     MUTED,
     OPEN_MARK,
-    PRINCIPAL_AXIS,
     SOLID_MARK,
     THIN,
-    THIN_ACCENT,
     Item,
     Label,
     Path,
     Picture,
     Style,
-    arrowhead,
     disc,
     polygon,
     stroke,
 )
-from edgetally.output.placing import STRIP, Placing
+from edgetally.output.placing import Placing
 from edgetally.output.symbols import AXES, SymbolSet
 from edgetally.units import length_factor
 
 if TYPE_CHECKING:
     from edgetally.results import SectionResult
 
-NO_ARC = 1.0
-"""Below this angle [degrees] the arc from x to axis 1 would be smaller than its own arrowhead."""
 SAME_CENTRE = 1e-3
 """A shear centre nearer to the centroid than this share of the section's size is not marked: it would cover it."""
 SAME_FIBRE = 2.0
@@ -70,7 +62,7 @@ class _Figure:
     def picture(self) -> Picture:
         items: list[Item] = [
             self.placing.material(),
-            *self._axes(),
+            *AxesOnPaper(self.placing, self.centre, self.theta, self.arbitrary, self.letters).items(),
             *self._extreme_fibres(),
             *centroid_mark(self.centre),
             *(shear_centre_mark(self.paper(self.shear_centre)) if self.shear_centre is not None else ()),
@@ -78,59 +70,6 @@ class _Figure:
             *self._key(),
         ]
         return Picture(self.width, self.height, tuple(items))
-
-    # ------------------------------------------------------------------ axes
-    def _border(self, direction: complex) -> complex:
-        """Return where the ray from the centroid leaves the room of the axes."""
-        inset = 6.0
-        reach = inf
-        if abs(direction.real) > 1e-12:
-            limit = self.width - inset if direction.real > 0 else inset
-            reach = min(reach, (limit - self.centre.real) / direction.real)
-        if abs(direction.imag) > 1e-12:
-            limit = self.height - inset if direction.imag > 0 else STRIP + inset
-            reach = min(reach, (limit - self.centre.imag) / direction.imag)
-        return self.centre + reach * direction
-
-    def _axes(self) -> Iterable[Item]:
-        drawing = [(0.0, self.letters.x), (pi / 2, self.letters.y)]
-        principal = [(self.theta, self.letters.first), (self.theta + pi / 2, self.letters.second)]
-        for angle, letter in drawing:
-            yield from self._axis(angle, letter, [a for a, _ in principal], principal=False)
-        for angle, letter in principal:
-            yield from self._axis(angle, letter, [a for a, _ in drawing], principal=True)
-        yield from self._angle_arc()
-
-    def _axis(self, angle: float, letter: str, others: list[float], *, principal: bool) -> Iterable[Item]:
-        direction = rect(1.0, angle)
-        tip, tail = self._border(direction), self._border(-direction)
-        yield stroke(tail, tip, PRINCIPAL_AXIS if principal else DRAWING_AXIS)
-        yield arrowhead(tip, direction, ACCENT_MARK if principal else SOLID_MARK)
-        # the nearest other ray decides on which side the letter stands
-        turns = [((o + k * pi / 2 - angle + pi) % (2 * pi)) - pi for o in others for k in range(4)]
-        nearest = min(turns, key=abs)
-        side = (1.0 if principal else -1.0) if abs(nearest) < 1e-9 else (-1.0 if nearest > 0 else 1.0)
-        normal = 1j * direction * side
-        at = tip - 9.0 * direction + 7.0 * normal - complex(0.0, 2.9)
-        margin = 7.0
-        at = complex(min(max(at.real, margin), self.width - margin), min(max(at.imag, STRIP + 2), self.height - 9.0))
-        yield Label(at, letter, 9.0, "middle", bold=principal, colour=ACCENT if principal else INK)
-
-    def _angle_arc(self) -> Iterable[Item]:
-        if self.arbitrary or abs(degrees(self.theta)) < NO_ARC:
-            return
-        ends = [abs(self._border(rect(1.0, a)) - self.centre) for a in (0.0, self.theta)]
-        radius = max(0.86 * min(ends), 14.0)
-        arc = Arc.from_centre(self.centre, radius, 0.0, self.theta)
-        yield Path(((arc,),), THIN_ACCENT)
-        sense = 1j if self.theta > 0 else -1j
-        # the head lies along the chord of its own length, not along the tangent at its tip
-        lean = rect(1.0, -2.5 / radius * (1 if self.theta > 0 else -1))
-        yield arrowhead(arc.end, rect(1.0, self.theta) * sense * lean, ACCENT_MARK, size=4.5)
-        wide = radius * abs(self.theta) > 22.0
-        turn = 0.5 * self.theta if wide else self.theta + (9.0 / radius) * (1 if self.theta > 0 else -1)
-        at = self.centre + rect(radius + (8.0 if wide else 0.0), turn) - complex(0.0, 3.0)
-        yield Label(at, "θ", 9.0, "middle", colour=ACCENT)
 
     # ------------------------------------------------------------------ marks
     def _extreme_fibres(self) -> Iterable[Item]:

@@ -8,7 +8,8 @@ from collections import defaultdict
 from typing import TYPE_CHECKING
 
 from edgetally.findings import RANK, Finding
-from edgetally.output.blocks import whole_part
+from edgetally.output.blocks import block_lines, whole_part
+from edgetally.output.composite_words import composite_blocks, composite_cells, composite_columns
 from edgetally.output.numbers import value_text
 from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
 from edgetally.output.words import CAUTION, described, evidence, header_fields
@@ -36,6 +37,9 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:
             lines.append(f"section {section.name}")
         lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS, analysis)
+    if analysis.composite is not None:
+        blocks = composite_blocks(analysis.composite, symbols)
+        lines += [line for block in (blocks[:1] if short else blocks) for line in ("", *block_lines(block))]
     findings = finding_lines(analysis.all_findings, analysis)
     if findings:
         lines += ["", "findings", *findings]
@@ -84,21 +88,34 @@ def finding_lines(findings: tuple[Finding, ...], analysis: Analysis) -> list[str
     return lines
 
 
-def csv_header(out_unit: str) -> list[str]:
-    """Return the column heads of the CSV: file and section, then every key with its unit in brackets."""
+def csv_header(out_unit: str, *, composite: bool = False) -> list[str]:
+    """Return the column heads of the CSV: file and section, then every key with its unit in brackets.
+
+    Where some drawing is `composite`, its own columns follow.
+    """
     from edgetally.section.kinds import unit_of
 
-    return ["drawing", "section", *(f"{key} [{unit_of(key, out_unit)}]" for key in KEYS), "findings"]
+    plain = ["drawing", "section", *(f"{key} [{unit_of(key, out_unit)}]" for key in KEYS), "findings"]
+    return plain + (composite_columns(out_unit) if composite else [])
 
 
 def csv_rows(analysis: Analysis) -> list[list[str]]:
-    """Return one row a section, full precision, empty where a property was not asked for."""
+    """Return one row a section, full precision, empty where a property was not asked for.
+
+    A composite section has a row a part, and then one of its own, longer by `composite_columns`.
+    """
     rows = []
     for section in analysis.sections:
         codes = " ".join(sorted({f.code for f in (*analysis.findings, *section.findings)}))
         values = [section.properties.get(key) for key in KEYS]
         numbers = ["" if p is None or p.value is None else repr(p.value) for p in values]
-        rows.append([_cell(analysis.drawing.file), section.name, *numbers, codes])
+        rows.append([_cell(analysis.drawing.file), _cell(section.name), *numbers, codes])
+    if analysis.composite is not None:
+        mass = analysis.composite.properties.get("mass_per_length")
+        own = [repr(mass.value) if key == "mass_per_length" and mass is not None else "" for key in KEYS]
+        codes = " ".join(sorted({f.code for f in analysis.findings}))
+        cells = composite_cells(analysis.composite)
+        rows.append([_cell(analysis.drawing.file), "composite", *own, codes, *cells])
     return rows
 
 

@@ -43,7 +43,7 @@ def in_print(text: str) -> str:
 def described(key: str, symbols: SymbolSet, analysis: Analysis) -> str:
     """Return the name of a property, with the density or Poisson's ratio that it was taken at."""
     name = name_of(key, symbols)
-    if key == "mass_per_length":
+    if key == "mass_per_length" and analysis.density is not None:  # of a composite section each part has its own
         return f"{name} at {analysis.density:g} kg/m³"
     return f"{name}, ν = {analysis.poisson:g}" if key.startswith("shear_area") else name
 

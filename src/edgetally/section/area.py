@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from cmath import rect
+from collections.abc import Sequence
 from dataclasses import dataclass
 from math import degrees, hypot
 
@@ -36,7 +37,7 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
     the distance to the extreme fibre of the true curves. Each number's error follows from the bounds of the moments
     (`curves.green.moments`) through the formulas (`Bounded`).
     """
-    sums = _Sums(section)
+    sums = Sums(section)
     unit, scale = section.unit, section.size
     out: dict[str, Property] = {}
 
@@ -64,13 +65,7 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
     give("polar_moment", polar)
 
     axes = principal_axes(second_x, second_y, product)
-    turned = sums.in_frame(rect(1.0, axes.angle.value))
-    # turned by φ too far they change by (I₁ − I₂)·sin²φ
-    astray = abs(turned.m02 - turned.m20) * axes.angle.slack**2
-    first = Bounded(turned.m02, turned.slack["m02"] + astray)
-    second = Bounded(turned.m20, turned.slack["m20"] + astray)
-    if axes.arbitrary and first.value < second.value:
-        first, second = second, first
+    first, second = sums.principal(axes)
     give("principal_moment_1", first)
     give("principal_moment_2", second)
     angle = Bounded(degrees(axes.angle.value), degrees(axes.angle.slack))
@@ -109,7 +104,7 @@ def area_properties(section: Section, *, density: float | None = None) -> AreaRe
 
 @dataclass(frozen=True, slots=True)
 class Extents:
-    """Distances from the centroid to the extreme fibres along the axes of a frame, all positive."""
+    """Distances from the centroid to the extreme fibres along the axes of a frame; positive but for a part alone."""
 
     right: Bounded
     top: Bounded
@@ -117,44 +112,57 @@ class Extents:
     bottom: Bounded
 
 
-class _Sums:
-    """The moments of one section, each integrated where it loses nothing."""
+class Sums:
+    """The moments of one section, each integrated where it loses nothing; or of parts, each weighted by a factor."""
 
-    def __init__(self, section: Section) -> None:
+    def __init__(self, section: Section, weighted: Sequence[tuple[Section, Bounded]] = ()) -> None:
+        """Sum over `section`, or over the `weighted` parts that make it up."""
         self._middle = section.middle
         self._packed = section.packed.framed(section.middle)
+        self._parts = [(part.packed.framed(section.middle), weight) for part, weight in weighted]
         # the coordinates' own rounding, and that of the change of frame
-        self.shift = section.input_rounding + EPS * section.size
-        rough = self._moments(self._packed)
-        mx = Bounded(rough.m10, rough.slack["m10"]) / Bounded(rough.m00, rough.slack["m00"])
-        my = Bounded(rough.m01, rough.slack["m01"]) / Bounded(rough.m00, rough.slack["m00"])
+        self.size = section.size
+        self.shift = section.input_rounding + EPS * self.size
+        area, first_x, first_y, *_ = self._moments(0j)
+        mx, my = first_x / area, first_y / area
         self._centroid = complex(mx.value, my.value)
         self.centroid_x = Bounded(self._middle.real) + mx
         self.centroid_y = Bounded(self._middle.imag) + my
         self._wander = max(mx.slack, my.slack)
-        fine = self.in_frame(1.0)
-        self.area = Bounded(fine.m00, fine.slack["m00"])
-        self.central = (
-            Bounded(fine.m02, fine.slack["m02"]),
-            Bounded(fine.m20, fine.slack["m20"]),
-            Bounded(fine.m11, fine.slack["m11"]),
-        )
+        self.area, _, _, *self.central = self._moments(self._centroid)
         self.central_extents = self.extents(1.0)
 
-    def _moments(self, packed: Packed) -> Moments:
-        return moments(packed, input_rounding=self.shift)
+    def _moments(self, origin: complex, turn: complex = 1.0) -> tuple[Bounded, ...]:
+        """Return A, ∫x dA, ∫y dA, ∫y² dA, ∫x² dA, ∫xy dA about `origin`, axes turned by the unit number `turn`."""
+        if not self._parts:
+            return _bounded(moments(self._packed.framed(origin, turn), input_rounding=self.shift))
+        total: tuple[Bounded, ...] = (Bounded(0.0),) * 6
+        for packed, weight in self._parts:
+            own = _bounded(moments(packed.framed(origin, turn), input_rounding=self.shift))
+            total = tuple(sum_ + weight * one for sum_, one in zip(total, own, strict=True))
+        return total
 
-    def in_frame(self, turn: complex) -> Moments:
-        """Integrate about the centroid, axes turned by the unit number `turn`."""
-        return self._moments(self._packed.framed(self._centroid, turn))
+    def principal(self, axes: Axes) -> tuple[Bounded, Bounded]:
+        """Return I₁ and I₂, integrated about the axes themselves."""
+        _, _, _, first, second, _ = self._moments(self._centroid, rect(1.0, axes.angle.value))
+        # turned by φ too far they change by (I₁ − I₂)·sin²φ
+        astray = abs(first.value - second.value) * axes.angle.slack**2
+        first, second = Bounded(first.value, first.slack + astray), Bounded(second.value, second.slack + astray)
+        return (second, first) if axes.arbitrary and first.value < second.value else (first, second)
 
-    def extents(self, turn: complex, astray: float = 0.0) -> Extents:
+    def extents(self, turn: complex, astray: float = 0.0, packed: Packed | None = None) -> Extents:
         """Return the distances from the centroid to the extreme fibres along axes turned by `turn`.
 
-        Axes turned too far by up to `astray` [rad] move a fibre by that times its distance from the centroid.
+        Axes turned too far by up to `astray` [rad] move a fibre by that times its distance from the centroid. Of the
+        curves `packed` alone, if given, where a distance may be negative.
         """
-        packed = self._packed.framed(self._centroid)
-        reach = [float(packed.supports(turn * d).max()) for d in (1, 1j, -1, -1j)]
+        curves = self._packed if packed is None else packed.framed(self._middle)
+        curves = curves.framed(self._centroid)
+        reach = [float(curves.supports(turn * d).max()) for d in (1, 1j, -1, -1j)]
         farthest = hypot(max(reach[0], reach[2]), max(reach[1], reach[3]))
         slack = self.shift + self._wander + astray * farthest
         return Extents(*(Bounded(distance, slack) for distance in reach))
+
+
+def _bounded(m: Moments) -> tuple[Bounded, ...]:
+    return tuple(Bounded(getattr(m, key), m.slack[key]) for key in ("m00", "m10", "m01", "m02", "m20", "m11"))
