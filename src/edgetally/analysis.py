@@ -17,7 +17,7 @@ from edgetally.measuring import measure
 from edgetally.outline.assembly import assemble
 from edgetally.outline.choosing import choose
 from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
-from edgetally.results import Analysis, DrawingRecord, Wanted
+from edgetally.results import Analysis, DrawingRecord, OptionsFile, Wanted
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
 
 
@@ -35,6 +35,7 @@ def analyse(
     material: Sequence[str] = (),
     torsion: bool = True,
     name: str | None = None,
+    options_file: OptionsFile | None = None,
 ) -> Analysis:
     """Read a drawing and measure the section, or sections, on a layer of it.
 
@@ -53,6 +54,7 @@ def analyse(
         `STEEL=210GPa,7850`; the sections are then the parts alone, and torsion and shear are not solved.
     torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
     name : the name that the result gives for the file, where `path` is a copy of it.
+    options_file : where some of these were taken from, for the record.
 
     Raises UsageError, DrawingError or OutlineError, each with the message that the command prints.
     """
@@ -83,6 +85,8 @@ def analyse(
         reading = drawing.read(layers)
     findings += reading.findings
     unit, unit_source = _unit(drawing, units, reading, findings)
+    if unit_source == "option" and options_file is not None and "units" in options_file.options:
+        unit_source = "config"
     findings += drawing.dimension_findings(scale)
     drawn_gap = gap * length_factor(gap_unit, unit)
     if materials:
@@ -115,8 +119,9 @@ def analyse(
         findings.append(said)
     wholes = [composite.whole] if composite else [s.section for s in sections]
     findings += [f for f in (size_finding(whole, unit_source) for whole in wholes) if f is not None][:1]
+    file = name or drawing.name
     record = DrawingRecord(
-        name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
+        file, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading, options_file
     )
     return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson, composite)
 

@@ -29,6 +29,14 @@ class Wanted:
 
 
 @dataclass(frozen=True, slots=True)
+class OptionsFile:
+    """The file that options were taken from, as seen from the drawing's folder, and the options that it set."""
+
+    file: str
+    options: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class DrawingRecord:
     """The drawing a result came from and how it was read."""
 
@@ -40,6 +48,7 @@ class DrawingRecord:
     scale: float
     join_gap: float
     reading: Reading
+    options_file: OptionsFile | None = None
 
 
 @dataclass(frozen=True, eq=False)

@@ -88,8 +88,13 @@ class Survey:
         }
 
 
-def survey(path: str | Path, *, units: str | None = None, name: str | None = None) -> Survey:
-    """Look over a drawing. Raises DrawingError where it cannot be read at all; what a layer lacks is in its verdict."""
+def survey(
+    path: str | Path, *, units: str | None = None, units_from: str = "option", name: str | None = None
+) -> Survey:
+    """Look over a drawing. Raises DrawingError where it cannot be read at all; what a layer lacks is in its verdict.
+
+    `units_from` is where `units` was given: `option` or `config`.
+    """
     loaded = load(path)
     drawing = DrawingFile(loaded)
     header, words = drawing.header_unit()
@@ -105,7 +110,7 @@ def survey(path: str | Path, *, units: str | None = None, name: str | None = Non
         drawing.sha256,
         drawing.dxf_version,
         unit,
-        "option" if units else ("header" if header else words),
+        units_from if units else ("header" if header else words),
         Packed.of(curves).box if curves else None,
         layers,
         drawing.hidden_layers(),

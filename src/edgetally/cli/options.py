@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
 
+from edgetally.cli.config import config_options, with_options_file
 from edgetally.errors import EdgetallyError, UsageError
 
 if TYPE_CHECKING:
@@ -65,7 +66,8 @@ _READING = [
 
 
 def reading_options(command: Command) -> Command:
-    """Add the options that say how a drawing is read and in what terms the results are given."""
+    """Add the options that say how a drawing is read and in what terms the results are given, and --config."""
+    command = config_options(command)
     for option in reversed(_READING):
         command = option(command)
     return command
@@ -92,7 +94,9 @@ def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
     """Analyse one drawing as the command's reading options say; `-` is standard input."""
     from edgetally.analysis import analyse
 
+    options, options_file = with_options_file(drawing, options)
     settings = {
+        "options_file": options_file,
         "layer": list(options["layer"]) or None,
         "units": options["units"],
         "scale": options["scale"],

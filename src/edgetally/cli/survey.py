@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 import click
 
+from edgetally.cli.config import config_options, with_options_file
 from edgetally.cli.options import EachDrawing, copied
 from edgetally.findings import worst
 
@@ -22,6 +23,7 @@ if TYPE_CHECKING:
     help="Length unit of the drawing; overrides its header.",
 )
 @click.option("--json", "as_json", is_flag=True, help="A JSON document; of several drawings one a line.")
+@config_options
 def survey(drawings: tuple[str, ...], units: str | None, as_json: bool) -> int:
     """Say what each DRAWING holds: unit, extents, and for each layer its entities, closed outlines, open ends.
 
@@ -31,8 +33,11 @@ def survey(drawings: tuple[str, ...], units: str | None, as_json: bool) -> int:
     from edgetally.survey import survey as look
 
     def looked(drawing: str) -> Survey:
+        options, file = with_options_file(drawing, {"units": units})
+        unit = options["units"]
+        source = "config" if file and "units" in file.options else "option"
         with copied(drawing) as (path, name):
-            return look(path, units=units, name=name)
+            return look(path, units=unit, units_from=source, name=name)
 
     each = EachDrawing(drawings)
     for number, found in enumerate(each.results(looked)):

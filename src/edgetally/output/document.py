@@ -28,6 +28,11 @@ def document(analysis: Analysis) -> dict[str, Any]:
             "scale": drawing.scale,
             "layers": list(reading.layers),
             "join_gap": drawing.join_gap,
+            **(
+                {"options_from": {"file": drawing.options_file.file, "options": list(drawing.options_file.options)}}
+                if drawing.options_file
+                else {}
+            ),
             "entities": {
                 "read": reading.read,
                 "used": reading.used,

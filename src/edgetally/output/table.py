@@ -30,8 +30,8 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
     for name, value in header_fields(analysis).items():
         if not (short and name in ("SHA-256", "DXF version")):
             lines.append(f"{name:<{LABEL}}{value}")
-    if not short:
-        lines += [f"{name:<{LABEL}}{value}" for name, value in evidence(analysis)]
+    told = [(name, value) for name, value in evidence(analysis) if not short or name == "options from"]
+    lines += [f"{name:<{LABEL}}{value}" for name, value in told]
     for section in analysis.sections:
         lines.append("")
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:

@@ -17,7 +17,7 @@ CAUTION = (
     "against the codes that apply, and have them used by a licensed professional."
 )
 
-UNIT_WORDS = {"option": "option", "header": "file header"}
+UNIT_WORDS = {"option": "option", "header": "file header", "config": "options file"}
 
 _SUPERSCRIPT = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
 
@@ -52,7 +52,9 @@ def evidence(analysis: Analysis) -> list[tuple[str, str]]:
     """Return (what, words) lines that show how the outline was read."""
     reading, outline = analysis.drawing.reading, analysis.outline
     used = ", ".join(f"{count} {kind}" for kind, (_, count) in reading.kinds.items() if count) or "none"
-    lines = [
+    file = analysis.drawing.options_file
+    lines = [("options from", f"{file.file}: {', '.join(file.options)}")] if file else []
+    lines += [
         ("entities on the layer", f"{reading.read} read = {reading.used} used + {len(reading.skips)} left out"),
         ("used", used),
     ]
