@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import json
 import re
-import shutil
 from pathlib import Path
 from typing import Any
 
@@ -16,15 +15,20 @@ from command import run
 from drawings import UNSET, draw_contours, drawing, square
 from outlines import polygon
 
-SAMPLES = Path(__file__).parent.parent / "sample_drawings"
+README = Path(__file__).parent.parent / "README.md"
 
 
 @pytest.fixture
 def bracket(tmp_path: Path) -> Path:
-    """The sample bracket two folders down."""
+    """A drawing of two closed outlines, of which a layer has to be named, two folders down."""
     folder = tmp_path / "job" / "rev"
     folder.mkdir(parents=True)
-    return Path(shutil.copy(SAMPLES / "bracket.dxf", folder))
+
+    def draw(space: Any) -> None:
+        square(space, 10)
+        square(space, 3, at=(40, 0), layer="NOTES")
+
+    return drawing(folder, draw, name="bracket.dxf")
 
 
 def write(folder: Path, text: str, name: str = "edgetally.toml") -> Path:
@@ -254,3 +258,14 @@ def test_bytes_that_are_no_text_are_refused(bracket: Path) -> None:
 def test_a_folder_of_that_name_is_no_file(bracket: Path) -> None:
     (bracket.parent / "edgetally.toml").mkdir()
     assert "options_from" not in document(bracket, "--layer", "OUTLINE")["drawing"]
+
+
+def test_the_example_of_the_readme(bracket: Path, tmp_path: Path) -> None:
+    example = re.search(r"```toml\n(.+?)```", README.read_text(), re.DOTALL)
+    assert example is not None
+    write(bracket.parent, example[1])
+    area = document(bracket)["sections"][0]["properties"]["area"]
+    assert (area["value"], area["unit"]) == (pytest.approx(1.0), "cm^2")
+    code, out, _ = run("sheet", bracket, "-o", tmp_path / "sheet.pdf")
+    assert code == 0
+    assert "edgetally.toml: layer, out-units, prepared, page" in out

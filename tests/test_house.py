@@ -38,7 +38,13 @@ ROOMS = [
     "units",
     "errors",
 ]
-DOORS = {"ezdxf": ["drawing"], "shapely": ["outline"], "click": ["cli"], "reportlab": ["output"]}
+DOORS = {
+    "ezdxf": ["drawing"],
+    "shapely": ["outline"],
+    "click": ["cli"],
+    "reportlab": ["output"],
+    "openpyxl": ["output"],
+}
 NEVER = {("section", "drawing"), ("outline", "drawing")}
 
 
@@ -102,7 +108,7 @@ def test_only_the_command_line_prints_or_exits() -> None:
 
 def test_help_is_quick_to_load() -> None:
     """Heavy libraries are not loaded before a command needs them."""
-    heavy = ("ezdxf", "numpy", "shapely", "reportlab")
+    heavy = ("ezdxf", "numpy", "shapely", "reportlab", "openpyxl")
     code = f"import sys, edgetally.cli; print([m for m in {heavy} if m in sys.modules])"
     done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
     assert done.stdout.strip() == "[]"

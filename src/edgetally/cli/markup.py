@@ -10,7 +10,7 @@ from edgetally.cli.options import EXIT_OF, analysed, reading_options
 
 
 @click.command(epilog="Example: edgetally markup sample_drawings/bracket.dxf --layer OUTLINE -o marked.dxf")
-@click.argument("drawing", metavar="DRAWING")
+@click.argument("drawing", type=click.Path(), metavar="DRAWING")
 @click.option("-o", "output", type=click.Path(), required=True, metavar="OUT.dxf", help="Where the drawing goes.")
 @reading_options
 def markup(drawing: str, output: str, **options: Any) -> int:

@@ -14,7 +14,7 @@ from edgetally.errors import UsageError
 @click.command(
     epilog="Example: edgetally sheet sample_drawings/bracket.dxf --layer OUTLINE -o bracket.pdf --title 'Bracket'"
 )
-@click.argument("drawing", metavar="DRAWING")
+@click.argument("drawing", type=click.Path(), metavar="DRAWING")
 @click.option("-o", "output", type=click.Path(), required=True, metavar="OUT.pdf", help="Where the sheet goes.")
 @reading_options
 @material_option

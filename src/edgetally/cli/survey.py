@@ -16,7 +16,7 @@ if TYPE_CHECKING:
 
 
 @click.command(epilog="Example: edgetally survey sample_drawings/bracket.dxf")
-@click.argument("drawings", nargs=-1, required=True, metavar="DRAWING...")
+@click.argument("drawings", nargs=-1, required=True, type=click.Path(), metavar="DRAWING...")
 @click.option(
     "--units",
     type=click.Choice(["mm", "cm", "m", "in", "ft"]),
