@@ -35,6 +35,7 @@ from edgetally.section.composite import KEYS, CompositeResult, Material, composi
 from edgetally.section.record import Section, input_rounding
 from edgetally.units import LBF, Unit, force_unit, parse_modulus
 from outlines import Outline, circle, circular_hollow, i_section, polygon, rotated, translated
+from test_laws import sections
 
 EXACT = 1e-13
 
@@ -363,6 +364,25 @@ def test_parts_share_a_free_curve() -> None:
         refuse_overlaps([("HILL", raised), ("MOULD", above)])
 
 
+@settings(deadline=None, max_examples=40)
+@given(sections(), st.floats(-180, 180), st.floats(-1e5, 1e5), st.floats(0, 360))
+def test_a_section_its_mould_and_its_cores(curves: list[Curve], turn: float, far: float, way: float) -> None:
+    """Wherever it lies and however it is turned, a section touches a mould that has its outline, and cores that fill
+    its voids; moved by a hundredth it lies over the mould and over each core."""
+    drawn = [curve.moved(rect(1, math.radians(turn)), complex(far, -0.7 * far)) for curve in curves]
+    solid = assemble(drawn).regions
+    outer = solid[0].outer
+    x0, y0, x1, y1 = outer.packed.box
+    frame = curves_of(rectangle(x0 - 5, y0 - 5, x1 - x0 + 10, y1 - y0 + 10))
+    others = [("MOULD", assemble([*outer.curves, *frame]).regions)]
+    others += [(f"CORE {k}", assemble(list(void.curves)).regions) for k, void in enumerate(solid[0].voids)]
+    refuse_overlaps([("SOLID", solid), *others])
+    moved = assemble([curve.moved(1.0, 0.01 * rect(1, math.radians(way))) for curve in drawn]).regions
+    for other in others:
+        with pytest.raises(OutlineError, match=f"SOLID and {other[0]} lie over each other"):
+            refuse_overlaps([("SOLID", moved), other])
+
+
 @st.composite
 def stars(draw: st.DrawFn) -> list[tuple[float, float]]:
     """A star-shaped polygon with corners on a coarse grid, so that corners and sides meet others often."""
@@ -451,6 +471,13 @@ def test_scale_and_units_reach_the_composite(tmp_path: Path) -> None:
         16 * value(plain, "bending_stiffness_y") / 1e9, rel=EXACT
     )
     assert "mass_per_length" not in plain.properties
+    half = edgetally.analyse(drawn(tmp_path, flitch), material=["WOOD=11GPa", "STEEL=210GPa,steel"]).composite
+    assert half is not None
+    assert "mass_per_length" not in half.properties
+    assert composite_blocks(half)[0].notes[-1] == "The mass is not given: WOOD has no density."
+    alone = edgetally.analyse(drawn(tmp_path, flitch), material="STEEL=210GPa").composite
+    assert alone is not None
+    assert value(alone, "axial_stiffness") == pytest.approx(210e3 * 2500, rel=EXACT)
 
 
 def test_table_and_document(tmp_path: Path) -> None:

@@ -32,7 +32,7 @@ def analyse(
     out_units: str | None = None,
     density: float | str | None = None,
     poisson: float = 0.3,
-    material: Sequence[str] = (),
+    material: str | Sequence[str] = (),
     torsion: bool = True,
     name: str | None = None,
     options_file: OptionsFile | None = None,

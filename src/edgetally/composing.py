@@ -19,7 +19,7 @@ from edgetally.units import parse_modulus
 
 
 def materials_of(
-    texts: Sequence[str],
+    texts: str | Sequence[str],
     density_of: Callable[[str], float | None],
     *,
     layer: object,
@@ -32,6 +32,7 @@ def materials_of(
     """
     if not texts:
         return ()
+    texts = [texts] if isinstance(texts, str) else texts
     if layer:
         raise UsageError("--layer and --material contradict each other: --material names the layers itself")
     if select not in (None, "together"):

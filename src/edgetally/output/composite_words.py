@@ -62,13 +62,16 @@ def _whole(composite: CompositeResult, symbols: SymbolSet) -> Block:
             error = f"{prop.error:.0e}" if prop.error else ""
             rows.append((composite_symbol(key, symbols), composite_name(key, symbols), value, prop.unit.pretty, error))
     letters = AXES[symbols]
-    notes = (
+    notes: tuple[str, ...] = (
         f"Transformed to E_ref = {composite.reference:.7g} MPa, that of the first material "
         f"({composite.parts[0].material.layer}): n = E/E_ref, A_t = Σ n·A, I_t = Σ n·I about the elastic centroid. "
         "The parts are taken as bonded: plane sections stay plane.",
         f"EI_{letters.x}{letters.y} and its transformed product have the sign of +∫{letters.x}·{letters.y} dA.",
         "Torsion and shear of a composite section are not given.",
     )
+    unknown = [part.material.layer for part in composite.parts if part.material.density is None]
+    if 0 < len(unknown) < len(composite.parts):
+        notes += (f"The mass is not given: {', '.join(unknown)} has no density.",)
     return Block("Composite section", ("", "", "", "unit", "relative error"), tuple(rows), notes, symbols_first=True)
 
 
