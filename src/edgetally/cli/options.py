@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import datetime
 import sys
 import tempfile
 from collections.abc import Callable, Iterable, Iterator
@@ -69,6 +70,31 @@ def reading_options(command: Command) -> Command:
     for option in reversed(_READING):
         command = option(command)
     return command
+
+
+_HEAD = [
+    click.option("--title", default="", help="Title in the head of the page."),
+    click.option("--reference", default="", help="Reference in the head of the page."),
+    click.option("--prepared", default="", help="Who prepared it."),
+    click.option("--date", "day", default="", metavar="YYYY-MM-DD", help="The date in the head of the page."),
+    click.option("--page", type=click.Choice(["a4", "letter"]), default="a4", show_default=True, help="Paper."),
+]
+
+
+def head_options(command: Command) -> Command:
+    """Add the options that fill the head of a page: title, reference, prepared, day; and page, the paper."""
+    for option in reversed(_HEAD):
+        command = option(command)
+    return command
+
+
+def checked_date(day: str) -> None:
+    """Refuse a day that is no date. Raises UsageError."""
+    if day:
+        try:
+            datetime.date.fromisoformat(day)
+        except ValueError:
+            raise UsageError(f"--date {day!r} is not a date: write it as 2026-03-31") from None
 
 
 def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
