@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from pathlib import Path
 
 from edgetally.curves import Packed
@@ -33,6 +33,7 @@ def analyse(
     poisson: float = 0.3,
     torsion: bool = True,
     name: str | None = None,
+    progress: Callable[[str], None] | None = None,
 ) -> Analysis:
     """Read a drawing and measure the section, or sections, on a layer of it.
 
@@ -49,6 +50,7 @@ def analyse(
     poisson : Poisson's ratio for the shear areas, from 0 to 0.5.
     torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
     name : the name that the result gives for the file, where `path` is a copy of it.
+    progress : called with the name of each stage as it begins.
 
     Raises UsageError, DrawingError or OutlineError, each with the message that the command prints.
     """
@@ -66,6 +68,8 @@ def analyse(
             "outline in the drawing"
         )
     kg_per_m3 = _density(density)
+    say = progress or (lambda stage: None)
+    say("reading the drawing")
     loaded = load(path)
     drawing = DrawingFile(loaded)
     findings: list[Finding] = [*loaded.findings]
@@ -75,6 +79,7 @@ def analyse(
     unit, unit_source = _unit(drawing, units, reading, findings)
     findings += drawing.dimension_findings(scale)
     drawn_gap = gap * length_factor(gap_unit, unit)
+    say("assembling the outline")
     try:
         outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
     except OutlineError as error:
@@ -90,15 +95,15 @@ def analyse(
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
     wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None)
-    sections = tuple(
-        measure(section_name, regions, unit, scale=scale, out_unit=out_unit, wanted=wanted)
-        for section_name, regions in chosen
-    )
+    sections = []
+    for number, (section_name, regions) in enumerate(chosen, start=1):
+        say(f"measuring section {number} of {len(chosen)}")
+        sections.append(measure(section_name, regions, unit, scale=scale, out_unit=out_unit, wanted=wanted))
     findings += [f for f in (size_finding(s, unit_source) for s in sections) if f is not None][:1]
     record = DrawingRecord(
         name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
     )
-    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson)
+    return Analysis(record, outline, tuple(sections), tuple(findings), out_unit, kg_per_m3, poisson)
 
 
 def _density(density: float | str | None) -> float | None:

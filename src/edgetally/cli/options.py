@@ -5,7 +5,7 @@ from __future__ import annotations
 import datetime
 import sys
 import tempfile
-from collections.abc import Callable, Iterable, Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
 
+from edgetally.cli.progress import Stages, with_progress
 from edgetally.errors import EdgetallyError, UsageError
 
 if TYPE_CHECKING:
@@ -105,8 +106,11 @@ def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
     return "each" if each else "together" if together else pick
 
 
-def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
-    """Analyse one drawing as the command's reading options say; `-` is standard input."""
+def analysed(drawing: str, options: dict[str, Any], *, alone: bool = True) -> Analysis:
+    """Analyse one drawing as the command's reading options say; `-` is standard input.
+
+    Of a drawing that is `alone` the stage is shown when it takes long; of several there is a bar.
+    """
     from edgetally.analysis import analyse
 
     settings = {
@@ -119,8 +123,8 @@ def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
         "density": options["density"],
         "poisson": options["poisson"],
     }
-    with copied(drawing) as (path, name):
-        return analyse(path, name=name, **settings)
+    with copied(drawing) as (path, name), Stages(shown=alone) as stages:
+        return analyse(path, name=name, progress=stages, **settings)
 
 
 @contextmanager
@@ -159,13 +163,3 @@ class EachDrawing:
     def saw(self, severity: Severity | None) -> None:
         """Take account of the gravest finding of a drawing."""
         self.code = max(self.code, EXIT_OF[severity])
-
-
-def with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
-    """Yield the drawings; on a terminal, and where there are several, with a bar on stderr."""
-    if len(drawings) == 1 or not sys.stderr.isatty():
-        yield from drawings
-        return
-    with click.progressbar(drawings, label="drawings", file=sys.stderr) as bar:
-        items: Iterable[str] = bar
-        yield from items
