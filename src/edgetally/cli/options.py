@@ -106,14 +106,9 @@ def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
     return "each" if each else "together" if together else pick
 
 
-def analysed(drawing: str, options: dict[str, Any], *, alone: bool = True) -> Analysis:
-    """Analyse one drawing as the command's reading options say; `-` is standard input.
-
-    Of a drawing that is `alone` the stage is shown when it takes long; of several there is a bar.
-    """
-    from edgetally.analysis import analyse
-
-    settings = {
+def settings_of(options: dict[str, Any]) -> dict[str, Any]:
+    """Turn the reading options of a command into what `analyse` takes."""
+    return {
         "layer": list(options["layer"]) or None,
         "units": options["units"],
         "scale": options["scale"],
@@ -123,6 +118,16 @@ def analysed(drawing: str, options: dict[str, Any], *, alone: bool = True) -> An
         "density": options["density"],
         "poisson": options["poisson"],
     }
+
+
+def analysed(drawing: str, options: dict[str, Any], *, alone: bool = True) -> Analysis:
+    """Analyse one drawing as the command's reading options say; `-` is standard input.
+
+    Of a drawing that is `alone` the stage is shown when it takes long; of several there is a bar.
+    """
+    from edgetally.analysis import analyse
+
+    settings = settings_of(options)
     with copied(drawing) as (path, name), Stages(shown=alone) as stages:
         return analyse(path, name=name, progress=stages, **settings)
 
