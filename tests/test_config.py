@@ -269,3 +269,18 @@ def test_the_example_of_the_readme(bracket: Path, tmp_path: Path) -> None:
     code, out, _ = run("sheet", bracket, "-o", tmp_path / "sheet.pdf")
     assert code == 0
     assert "edgetally.toml: layer, out-units, prepared, page" in out
+
+
+def test_two_drawings_that_are_compared_must_agree(tmp_path: Path) -> None:
+    for name in "ab":
+        (tmp_path / name).mkdir()
+        drawing(tmp_path / name, lambda space: square(space, 10), units=UNSET)
+    paths = [tmp_path / name / "drawing.dxf" for name in "ab"]
+    write(tmp_path / "a", 'units = "mm"\n')
+    code, _, err = run("compare", *paths)
+    assert code == 2
+    assert "the drawings do not agree on units" in err
+    write(tmp_path / "b", 'units = "mm"\n')
+    code, _, err = run("compare", *paths)
+    assert code == 0
+    assert err == "edgetally: options from edgetally.toml: units\n"

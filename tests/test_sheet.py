@@ -17,8 +17,11 @@ from pypdf.generic import ContentStream
 from build import analyse_once as analyse
 from command import run
 from drawings import INCH, draw_contours, draw_loose, drawing, square
+from edgetally.output.blocks import Block, Figure
+from edgetally.output.pages import Pages, Setup, whole_pdf
 from edgetally.output.pens import ACCENT
 from edgetally.output.sheet import Head, sheet_pdf
+from edgetally.output.typesetting import set_blocks
 from outlines import i_section
 
 SAMPLES = Path(__file__).parent.parent / "sample_drawings"
@@ -295,3 +298,44 @@ def test_closed_polylines_with_bulges_reach_the_sheet(tmp_path: Path) -> None:
     path = drawing(tmp_path, lambda space: draw_contours(space, i_section(200, 100, 5.6, 8.5, 12)))
     text = re.sub(r"\s+", " ", text_of(sheet_pdf(analyse(path, layer="OUTLINE", out_units="cm"))))
     assert "second moment about x 1943.168 cm⁴" in text  # EN 10365, IPE 200: 1943 cm⁴
+
+
+def test_pages_named_are_written_and_no_others(tmp_path: Path) -> None:
+    target = tmp_path / "sheet.pdf"
+    words = ("sheet", SAMPLES / "bracket.dxf", "--layer", "OUTLINE", "-o", target)
+    for pages, titles in (("main", ["bracket.dxf"]), ("torsion", ["Torsion and shear"]), ("Main,torsion", None)):
+        code, _, err = run(*words, "--pages", pages)
+        assert (code, err) == (0, "")
+        reader = pypdf.PdfReader(target)
+        assert len(reader.pages) == (2 if titles is None else 1)
+        if titles:
+            assert [entry.title for entry in reader.outline] == titles
+    # what the torsion page shows, the first page has where it stands alone
+    run(*words, "--pages", "main")
+    assert "warping constant" in pypdf.PdfReader(target).pages[0].extract_text()
+    run(*words)
+    assert "warping constant" not in pypdf.PdfReader(target).pages[0].extract_text()
+    code, _, err = run(*words, "--pages", "main,front")
+    assert code == 2
+    assert "'front' is not known" in err
+
+
+def test_a_long_block_flows_over_pages_with_its_heads() -> None:
+    """400 rows: each is on paper once, with the heads of the columns on each page."""
+    setup = Setup("a4", Head(), "Test", (("Drawing", "a.dxf", 1.0),), ("SHA-256", "0"), (), "t", "s", "k")
+    rows = tuple((f"row {k:03d}", Figure.of(1.5 * k), "words that go on " * (k % 9)) for k in range(400))
+    block = Block("Long", ("name", "value", "remark"), rows, ("A note at the end.",))
+
+    def write(pages: Pages) -> None:
+        set_blocks(pages, [block], pages.open("Start") - 6.0)
+
+    reader = pypdf.PdfReader(io.BytesIO(whole_pdf(setup, write)))
+    texts = [page.extract_text() for page in reader.pages]
+    text = "\n".join(texts)
+    assert len(texts) > 5
+    for k in range(400):
+        assert text.count(f"row {k:03d}") == 1
+    assert all("remark" in page for page in texts)
+    assert text.count("A note at the end.") == 1
+    assert texts[0].startswith("Long\n") is False
+    assert all("Long, continued" in page for page in texts[1:])

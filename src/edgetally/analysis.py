@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from pathlib import Path
 
 from edgetally.composing import account_of, assemble_parts, compose, materials_of, read_parts
@@ -36,6 +36,7 @@ def analyse(
     torsion: bool = True,
     name: str | None = None,
     options_file: OptionsFile | None = None,
+    progress: Callable[[str], None] | None = None,
 ) -> Analysis:
     """Read a drawing and measure the section, or sections, on a layer of it.
 
@@ -55,6 +56,7 @@ def analyse(
     torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
     name : the name that the result gives for the file, where `path` is a copy of it.
     options_file : where some of these were taken from, for the record.
+    progress : called with the name of each stage as it begins.
 
     Raises UsageError, DrawingError or OutlineError, each with the message that the command prints.
     """
@@ -73,6 +75,8 @@ def analyse(
         )
     kg_per_m3 = _density(density)
     materials = materials_of(material, _density, layer=layer, select=select, density=density)
+    say = progress or (lambda stage: None)
+    say("reading the drawing")
     loaded = load(path)
     drawing = DrawingFile(loaded)
     findings: list[Finding] = [*loaded.findings]
@@ -89,6 +93,7 @@ def analyse(
         unit_source = "config"
     findings += drawing.dimension_findings(scale)
     drawn_gap = gap * length_factor(gap_unit, unit)
+    say("assembling the outline")
     if materials:
         outline, chosen, hatched = assemble_parts(readings, drawn_gap, unit)
     else:
@@ -109,10 +114,10 @@ def analyse(
     out_unit = out_units or unit
     wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None)
     each_wanted = [Wanted(density=m.density, poisson=None) for m in materials] or [wanted] * len(chosen)
-    sections = tuple(
-        measure(section_name, regions, unit, scale=scale, out_unit=out_unit, wanted=own)
-        for (section_name, regions), own in zip(chosen, each_wanted, strict=True)
-    )
+    sections = []
+    for number, ((section_name, regions), own) in enumerate(zip(chosen, each_wanted, strict=True), start=1):
+        say(f"measuring section {number} of {len(chosen)}")
+        sections.append(measure(section_name, regions, unit, scale=scale, out_unit=out_unit, wanted=own))
     composite = None
     if materials:
         composite, said = compose(materials, sections, out_unit)
@@ -123,7 +128,7 @@ def analyse(
     record = DrawingRecord(
         file, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading, options_file
     )
-    return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson, composite)
+    return Analysis(record, outline, tuple(sections), tuple(findings), out_unit, kg_per_m3, poisson, composite)
 
 
 def _density(density: float | str | None) -> float | None:

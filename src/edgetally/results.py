@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
+from math import degrees
 from typing import Any
 
 from edgetally.drawing.reading import Reading
@@ -69,7 +70,9 @@ class SectionResult:
 
     def natural_scale(self, key: str) -> float:
         """Return what an error is relative to where a value may vanish: the size for coordinates, (I_x + I_y)/2 for
-        products of inertia, 1e-5·I_p²/A for the warping constant, 0 for all others."""
+        products of inertia, 1e-5·I_p²/A for the warping constant, a radian for the angle, 0 for all others."""
+        if key == "principal_angle":
+            return degrees(1.0)
         length = length_factor(self.section.unit, self.out_unit)
         if key in ("centroid_x", "centroid_y", "shear_centre_x", "shear_centre_y"):
             return self.section.size * length

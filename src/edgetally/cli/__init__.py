@@ -8,6 +8,7 @@ import sys
 import click
 
 from edgetally import __version__
+from edgetally.cli.compare import compare
 from edgetally.cli.markup import markup
 from edgetally.cli.sheet import sheet
 from edgetally.cli.survey import survey
@@ -28,6 +29,7 @@ cli.add_command(survey)
 cli.add_command(tally)
 cli.add_command(sheet)
 cli.add_command(markup)
+cli.add_command(compare)
 
 
 # The matrices of one section are too small for several threads: with two, the same work was measured to take twice as

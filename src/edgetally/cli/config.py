@@ -68,15 +68,17 @@ class _Settings:
 def config_options(command: Command) -> Command:
     """Add --config and --no-config, and let the command see the options of the file as if they had been given.
 
-    What the drawings' files do not agree on is left to `with_options_file`, drawing by drawing.
+    Where drawings are worked on one by one, what their files do not agree on is left to `with_options_file`, drawing by
+    drawing; two that are compared must agree on everything.
     """
 
     @functools.wraps(command)
     def seen(*args: Any, **given: Any) -> Any:
         for own in ("config", "no_config"):
             given.pop(own, None)
-        drawings = given.get("drawings", (given["drawing"],) if "drawing" in given else ())
-        return command(*args, **_agreed(drawings or (None,), given))
+        one_by_one = "drawings" in given
+        drawings = given["drawings"] if one_by_one else [given[k] for k in ("drawing", "old", "new") if k in given]
+        return command(*args, **_agreed(drawings or (None,), given, one_by_one=one_by_one))
 
     made: Any = seen
     for option in reversed(_OPTIONS):
@@ -100,7 +102,7 @@ def with_options_file(drawing: str | None, options: Mapping[str, Any]) -> tuple[
     return {**options, **found}, OptionsFile(settings.shown, keys) if keys else None
 
 
-def _agreed(drawings: Iterable[str | None], given: dict[str, Any]) -> dict[str, Any]:
+def _agreed(drawings: Iterable[str | None], given: dict[str, Any], *, one_by_one: bool) -> dict[str, Any]:
     context = click.get_current_context()
     each = [(s, _in_force(context, s) if s else {}) for s in (_settings(context, d) for d in drawings)]
     merged = dict(given)
@@ -108,7 +110,7 @@ def _agreed(drawings: Iterable[str | None], given: dict[str, Any]) -> dict[str, 
     for name in dict.fromkeys(name for _, values in each for name in values):
         if all(name in values and values[name] == first.get(name) for _, values in each):
             merged[name] = first[name]
-        elif name in AGREED:
+        elif name in AGREED or not one_by_one:
             files = ", ".join(dict.fromkeys(settings.shown for settings, _ in each if settings))
             key = next(settings.keys[name] for settings, values in each if settings and name in values)
             raise UsageError(f"the drawings do not agree on {key}, by {files}: give it on the command line")

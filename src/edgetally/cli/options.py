@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+import datetime
 import sys
 import tempfile
-from collections.abc import Callable, Iterable, Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
@@ -13,6 +14,7 @@ from typing import TYPE_CHECKING, Any, TypeVar
 import click
 
 from edgetally.cli.config import config_options, with_options_file
+from edgetally.cli.progress import Stages, with_progress
 from edgetally.errors import EdgetallyError, UsageError
 
 if TYPE_CHECKING:
@@ -82,6 +84,31 @@ material_option = click.option(
 )
 
 
+_HEAD = [
+    click.option("--title", default="", help="Title in the head of the page."),
+    click.option("--reference", default="", help="Reference in the head of the page."),
+    click.option("--prepared", default="", help="Who prepared it."),
+    click.option("--date", "day", default="", metavar="YYYY-MM-DD", help="The date in the head of the page."),
+    click.option("--page", type=click.Choice(["a4", "letter"]), default="a4", show_default=True, help="Paper."),
+]
+
+
+def head_options(command: Command) -> Command:
+    """Add the options that fill the head of a page: title, reference, prepared, day; and page, the paper."""
+    for option in reversed(_HEAD):
+        command = option(command)
+    return command
+
+
+def checked_date(day: str) -> None:
+    """Refuse a day that is no date. Raises UsageError."""
+    if day:
+        try:
+            datetime.date.fromisoformat(day)
+        except ValueError:
+            raise UsageError(f"--date {day!r} is not a date: write it as 2026-03-31") from None
+
+
 def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
     """Turn the three options into what `analyse` takes. Raises UsageError where they contradict."""
     given = [name for name, on in (("--each", each), ("--together", together), ("--pick", pick is not None)) if on]
@@ -90,13 +117,9 @@ def selection(*, each: bool, together: bool, pick: str | None) -> str | None:
     return "each" if each else "together" if together else pick
 
 
-def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
-    """Analyse one drawing as the command's reading options say; `-` is standard input."""
-    from edgetally.analysis import analyse
-
-    options, options_file = with_options_file(drawing, options)
-    settings = {
-        "options_file": options_file,
+def settings_of(options: dict[str, Any]) -> dict[str, Any]:
+    """Turn the reading options of a command into what `analyse` takes."""
+    return {
         "layer": list(options["layer"]) or None,
         "units": options["units"],
         "scale": options["scale"],
@@ -107,8 +130,19 @@ def analysed(drawing: str, options: dict[str, Any]) -> Analysis:
         "poisson": options["poisson"],
         "material": list(options.get("material", ())),
     }
-    with copied(drawing) as (path, name):
-        return analyse(path, name=name, **settings)
+
+
+def analysed(drawing: str, options: dict[str, Any], *, alone: bool = True) -> Analysis:
+    """Analyse one drawing as the command's reading options say; `-` is standard input.
+
+    Of a drawing that is `alone` the stage is shown when it takes long; of several there is a bar.
+    """
+    from edgetally.analysis import analyse
+
+    options, options_file = with_options_file(drawing, options)
+    settings = settings_of(options) | {"options_file": options_file}
+    with copied(drawing) as (path, name), Stages(shown=alone) as stages:
+        return analyse(path, name=name, progress=stages, **settings)
 
 
 @contextmanager
@@ -147,13 +181,3 @@ class EachDrawing:
     def saw(self, severity: Severity | None) -> None:
         """Take account of the gravest finding of a drawing."""
         self.code = max(self.code, EXIT_OF[severity])
-
-
-def with_progress(drawings: tuple[str, ...]) -> Iterator[str]:
-    """Yield the drawings; on a terminal, and where there are several, with a bar on stderr."""
-    if len(drawings) == 1 or not sys.stderr.isatty():
-        yield from drawings
-        return
-    with click.progressbar(drawings, label="drawings", file=sys.stderr) as bar:
-        items: Iterable[str] = bar
-        yield from items

@@ -47,7 +47,9 @@ def tally(
     rows: list[list[str]] = []
     csv_units: set[str] = set()
     each = EachDrawing(drawings)
-    for number, analysis in enumerate(each.results(lambda drawing: analysed(drawing, options))):
+    for number, analysis in enumerate(
+        each.results(lambda drawing: analysed(drawing, options, alone=len(drawings) == 1))
+    ):
         each.saw(analysis.severity)
         if as_json:
             print(json.dumps(analysis.to_dict(), ensure_ascii=False, indent=2 if len(drawings) == 1 else None))

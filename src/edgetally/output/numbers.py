@@ -41,8 +41,8 @@ def value_text(prop: Property, scale: float = 0.0) -> str:
     """Write a property's value. A value below its own error on the natural `scale` is written as 0."""
     if prop.value is None:
         return "–"
-    if prop.error is not None and abs(prop.value) <= 2.0 * prop.error * scale:
-        return "0"
     if prop.unit.base == "deg":
         return f"{prop.value + 0.0:.4f}"
+    if prop.error is not None and abs(prop.value) <= 2.0 * prop.error * scale:
+        return "0"
     return number_text(prop.value, digits_of(prop.error))
