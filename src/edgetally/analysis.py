@@ -34,6 +34,7 @@ def analyse(
     poisson: float = 0.3,
     material: str | Sequence[str] = (),
     torsion: bool = True,
+    neutral_axis: float | None = None,
     name: str | None = None,
     options_file: OptionsFile | None = None,
     progress: Callable[[str], None] | None = None,
@@ -54,6 +55,7 @@ def analyse(
     material : `LAYER=E[,DENSITY]` for each part of a composite section, E in MPa or with its unit, as
         `STEEL=210GPa,7850`; the sections are then the parts alone, and torsion and shear are not solved.
     torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
+    neutral_axis : K of the bend allowances of a cold-formed strip, 0 to 0.5; that of DIN 6935 without it.
     name : the name that the result gives for the file, where `path` is a copy of it.
     options_file : where some of these were taken from, for the record.
     progress : called with the name of each stage as it begins.
@@ -64,6 +66,8 @@ def analyse(
         raise UsageError(f"the scale must be a positive number, not {scale:g}")
     if not 0.0 <= poisson <= 0.5:
         raise UsageError(f"Poisson's ratio must be from 0 to 0.5, not {poisson:g}")
+    if neutral_axis is not None and not 0.0 <= neutral_axis <= 0.5:
+        raise UsageError(f"the neutral axis K must be from 0 (inner face) to 0.5 (midline), not {neutral_axis:g}")
     for unit_name in (units, out_units):
         if unit_name is not None and unit_name not in MM_PER:
             raise UsageError(f"unit {unit_name!r} is not known: use one of {', '.join(MM_PER)}")
@@ -112,7 +116,7 @@ def analyse(
         text = f"part {number + 1} lies inside a void of another part"
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
-    wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None)
+    wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None, neutral_axis=neutral_axis)
     each_wanted = [Wanted(density=m.density, poisson=None) for m in materials] or [wanted] * len(chosen)
     sections = []
     for number, ((section_name, regions), own) in enumerate(zip(chosen, each_wanted, strict=True), start=1):

@@ -14,6 +14,7 @@ from edgetally.section.accuracy import WARPING_SCALE
 from edgetally.section.area import AreaResult
 from edgetally.section.composite import CompositeResult
 from edgetally.section.connected import ConnectedResult
+from edgetally.section.developed import Developed
 from edgetally.section.record import Property, Section
 from edgetally.units import length_factor
 
@@ -22,11 +23,13 @@ from edgetally.units import length_factor
 class Wanted:
     """What is asked of a section beyond its outline.
 
-    `density` [kg/m³] adds the mass per length; `poisson` is for the shear areas, None for no torsion and shear at all.
+    `density` [kg/m³] adds the mass per length; `poisson` is for the shear areas, None for no torsion and shear at all;
+    `neutral_axis` is K of the bend allowances, None for that of DIN 6935.
     """
 
     density: float | None = None
     poisson: float | None = 0.3
+    neutral_axis: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -63,6 +66,8 @@ class SectionResult:
     properties: dict[str, Property]
     findings: tuple[Finding, ...]
     out_unit: str
+    developed: Developed | None = None
+    """The strip or tube that the section is, unrolled; None for any other."""
 
     @property
     def name(self) -> str:

@@ -64,6 +64,13 @@ _READING = [
         help="kg/m³, or steel, aluminium, stainless: adds the mass per length.",
     ),
     click.option("--poisson", type=float, default=0.3, show_default=True, help="Poisson's ratio, for the shear areas."),
+    click.option(
+        "--neutral-axis",
+        type=float,
+        metavar="K",
+        help="Of a cold-formed strip: the neutral layer of bends as a share of the thickness, 0 to 0.5. Without it: "
+        "DIN 6935.",
+    ),
 ]
 
 
@@ -128,6 +135,7 @@ def settings_of(options: dict[str, Any]) -> dict[str, Any]:
         "out_units": options["out_units"],
         "density": options["density"],
         "poisson": options["poisson"],
+        "neutral_axis": options["neutral_axis"],
         "material": list(options.get("material", ())),
     }
 

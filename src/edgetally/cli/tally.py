@@ -90,7 +90,9 @@ def _write_svg(svg: str, analysis: Any, symbols: Any) -> None:
 def _write_workbook(xlsx: str, analyses: list[Analysis], symbols: Any) -> None:
     from edgetally.output.composite_words import composite_blocks
     from edgetally.output.files import write_whole
+    from edgetally.output.section_blocks import section_blocks
     from edgetally.output.workbook import workbook_bytes
 
     blocks = [block for a in analyses if a.composite for block in composite_blocks(a.composite, symbols)]
+    blocks += [block for a in analyses for section in a.sections for block in section_blocks(section, symbols)]
     write_whole(xlsx, workbook_bytes(analyses, symbols, blocks))

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from textwrap import wrap
 
 from edgetally.output.numbers import number_text
 
@@ -45,7 +46,8 @@ def block_lines(block: Block) -> list[str]:
     lines = [block.title]
     columns = [_aligned([row[k] if k < len(row) else "" for row in rows], bool(block.columns)) for k in range(count)]
     lines += ["  " + "  ".join(cells).rstrip() for cells in zip(*columns, strict=True)]
-    return [*lines, *(f"  {note}" for note in block.notes)]
+    notes = [wrap(note, 98, initial_indent="  ", subsequent_indent="  ") for note in block.notes]
+    return [*lines, *(line for note in notes for line in note)]
 
 
 def _aligned(cells: list[Cell], headed: bool) -> list[str]:

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 from edgetally import __version__
 from edgetally.output.composite_words import composite_document
+from edgetally.output.section_blocks import section_document
 
 if TYPE_CHECKING:
     from edgetally.results import Analysis, SectionResult
@@ -56,5 +57,6 @@ def _section(section: SectionResult) -> dict[str, Any]:
         "properties": {
             key: {"value": p.value, "unit": str(p.unit), "error": p.error} for key, p in section.properties.items()
         },
+        **section_document(section),
         "findings": [finding.to_dict() for finding in section.findings],
     }

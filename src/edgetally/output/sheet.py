@@ -11,11 +11,14 @@ from edgetally.output.blocks import Block
 from edgetally.output.main_page import MainPage
 from edgetally.output.pages import LEADING, Head, Pages, Setup, whole_pdf
 from edgetally.output.pens import Picture
+from edgetally.output.strip_picture import strip_picture
+from edgetally.output.strip_words import strip_blocks
 from edgetally.output.symbols import AXES, SymbolSet
 from edgetally.output.torsion_words import torsion_block
 from edgetally.output.typesetting import block_height, set_blocks
 from edgetally.output.warping import warping_picture
 from edgetally.output.words import conventions, header_fields
+from edgetally.section.developed import why_no_strip
 
 if TYPE_CHECKING:
     from edgetally.results import Analysis, SectionResult
@@ -57,7 +60,7 @@ def sheet_pdf(
     """
     for name in pages:
         if name not in ("main", "all") and not any(name in _matters(s, symbols) for s in analysis.sections):
-            raise UsageError(f"there is nothing to show on the page {name}: {NOTHING[name]}")
+            raise UsageError(f"there is nothing to show on the page {name}: {_reason(name, analysis.sections[0])}")
     head = head or Head()
     fields = header_fields(analysis)
     digest = fields.pop("SHA-256")
@@ -81,6 +84,15 @@ def sheet_pdf(
             _write_section(paper, analysis, section, symbols, pages)
 
     return whole_pdf(setup, write)
+
+
+def _reason(page: str, section: SectionResult) -> str:
+    """Say why a page that was asked for has nothing to show."""
+    if page != "strip":
+        return NOTHING[page]
+    if section.developed is not None:
+        return "the strip has no bend"
+    return "the section is no strip of one thickness: " + why_no_strip([loop.curves for loop in section.section.loops])
 
 
 def _write_section(
@@ -123,5 +135,14 @@ def _matters(section: SectionResult, symbols: SymbolSet) -> dict[str, Matter]:
             lambda width, height: warping_picture(section, solution, width, height),
             (torsion_block(section, solution, symbols),),
             frozenset({"warping_constant", "shear_area_x", "shear_area_y"}),
+        )
+    unrolled = section.developed
+    if unrolled is not None and unrolled.bends:
+        found["strip"] = Matter(
+            "Cold-formed strip",
+            "The strip, its flats and bends numbered along it, and the blank",
+            lambda width, height: strip_picture(section, unrolled, width, height),
+            strip_blocks(section),
+            frozenset({"strip_thickness", "strip_width"}),
         )
     return found

@@ -64,6 +64,8 @@ _TABLE: dict[str, tuple[str, str]] = {
     "shear_centre_y": ("shear centre, {y}", "{y}_s"),
     "shear_area_x": ("shear area along {x}", "A_s{x}"),
     "shear_area_y": ("shear area along {y}", "A_s{y}"),
+    "strip_thickness": ("thickness of the strip", "t"),
+    "strip_width": ("developed width, midline", "b_dev"),
     "mass_per_length": ("mass per length", "m"),
 }
 

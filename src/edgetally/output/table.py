@@ -11,6 +11,7 @@ from edgetally.findings import RANK, Finding
 from edgetally.output.blocks import block_lines, whole_part
 from edgetally.output.composite_words import composite_blocks, composite_cells, composite_columns
 from edgetally.output.numbers import value_text
+from edgetally.output.section_blocks import section_blocks
 from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
 from edgetally.output.words import CAUTION, described, evidence, header_fields
 
@@ -37,6 +38,8 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:
             lines.append(f"section {section.name}")
         lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS, analysis)
+        if not short:
+            lines += [line for block in section_blocks(section, symbols) for line in ("", *block_lines(block))]
     if analysis.composite is not None:
         blocks = composite_blocks(analysis.composite, symbols)
         lines += [line for block in (blocks[:1] if short else blocks) for line in ("", *block_lines(block))]

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 from edgetally.findings import Finding
 from edgetally.section.kinds import unit_of
-from edgetally.section.midline import Strip, ThinWalled, strip_of, thin_walled
+from edgetally.section.midline import Strip, ThinWalled, thin_walled
 from edgetally.section.record import Property, Section
 from edgetally.section.solution import TorsionSolution
 from edgetally.section.solver import UnsolvableError, solve
@@ -38,8 +38,8 @@ class ConnectedResult:
 NOT_ASKED = ConnectedResult({}, None, ())
 
 
-def connected_properties(section: Section, *, poisson: float) -> ConnectedResult:
-    """Solve torsion and shear of a section; `poisson` matters for the shear areas only.
+def connected_properties(section: Section, *, poisson: float, strip: Strip | None = None) -> ConnectedResult:
+    """Solve torsion and shear of a section; `poisson` matters for the shear areas only, `strip` is what the section is.
 
     Separate parts twist side by side, so that their torsion constants add; shear centre, warping and shear areas have
     no meaning without a connection, and are None with `parts-disconnected`. What cannot be solved is None with the
@@ -58,7 +58,6 @@ def connected_properties(section: Section, *, poisson: float) -> ConnectedResult
         solutions.append(solution)
         findings += solution.findings
     if len(solutions) == 1:
-        strip = strip_of([loop.curves for loop in section.regions[0].loops])
         thin = thin_walled(strip) if strip is not None else None
         return ConnectedResult(_properties(section, solutions[0]), solutions[0], tuple(findings), strip, thin)
     text = (

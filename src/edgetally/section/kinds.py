@@ -39,6 +39,8 @@ POWERS: dict[str, int] = {
     "shear_centre_y": 1,
     "shear_area_x": 2,
     "shear_area_y": 2,
+    "strip_thickness": 1,
+    "strip_width": 1,
 }
 
 OWN_UNITS: dict[str, Unit] = {"principal_angle": Unit("deg"), "mass_per_length": Unit("kg/m")}

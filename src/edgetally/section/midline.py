@@ -21,17 +21,22 @@ from edgetally.section.nodes import Nodes
 from edgetally.section.panels import whole
 from edgetally.section.simplified import simplified
 
-# The two sides of a strip may deviate from each other by this share of its thickness.
-EVEN = 1e-6
+# The two sides of a strip may deviate from each other by this share of its thickness: ends joined over a gap, and
+# coordinates rounded in the drawing, make them do.
+EVEN = 1e-2
 
 
 @dataclass(frozen=True, eq=False)
 class Strip:
-    """The midline of a wall of one thickness [unit], from end to end; `closed` if it is a single cell."""
+    """The midline of a wall of one thickness [unit], from end to end; `closed` if it is a single cell.
+
+    `uneven` is the largest share of the thickness by which the distance of its sides was found to differ from it.
+    """
 
     thickness: float
     midline: tuple[Curve, ...]
     closed: bool
+    uneven: float = 0.0
 
 
 @dataclass(frozen=True, eq=False)
@@ -71,15 +76,26 @@ def strip_of(loops: Sequence[Sequence[Curve]]) -> Strip | None:
     if not all(cleaned):
         return None
     boundary = Boundary.of(cleaned)
-    origin = complex(boundary.start[0])
-    area = float(area_moments(Boundary.of([[c.moved(1.0, -origin) for c in loop] for loop in cleaned]))[0, 0])
-    perimeter = float(boundary.length.sum())
     if len(cleaned) == 2:
-        return _cell(cleaned[0], cleaned[1], 2.0 * area / perimeter)
+        return _cell(cleaned[0], cleaned[1], 2.0 * _area_of(boundary) / float(boundary.length.sum()))
+    thickness = nominal_thickness(boundary)
+    return None if thickness is None else _open(boundary, thickness)
+
+
+def nominal_thickness(boundary: Boundary) -> float | None:
+    """Return the t of an open strip of this area A and perimeter P: the smaller root of t² − P·t/2 + A = 0.
+
+    None where there is none: A is more than a square of this perimeter would have.
+    """
+    area, perimeter = _area_of(boundary), float(boundary.length.sum())
     if area <= 0.0 or perimeter**2 < 16.0 * area:
         return None
-    # the smaller root of t² − P·t/2 + A = 0, without cancellation
-    return _open(boundary, 4.0 * area / (perimeter + sqrt(perimeter**2 - 16.0 * area)))
+    return 4.0 * area / (perimeter + sqrt(perimeter**2 - 16.0 * area))  # without cancellation
+
+
+def _area_of(boundary: Boundary) -> float:
+    origin = complex(boundary.start[0])
+    return float(area_moments(Boundary.of([[c.moved(1.0, -origin) for c in boundary.curves]]))[0, 0])
 
 
 def _open(boundary: Boundary, thickness: float) -> Strip | None:
@@ -93,60 +109,72 @@ def _open(boundary: Boundary, thickness: float) -> Strip | None:
     curves = boundary.curves
     right = list(curves[first + 1 : last])
     left = [curve.reversed() for curve in reversed([*curves[last + 1 :], *curves[:first]])]
-    midline = _between(left, right, thickness)
-    return Strip(thickness, tuple(midline), closed=False) if midline else None
+    wall = _Wall(thickness, [0.0])
+    midline = wall.between(left, right)
+    return Strip(thickness, tuple(midline), closed=False, uneven=max(wall.off)) if midline else None
 
 
 def _cell(outer: Sequence[Curve], void: Sequence[Curve], thickness: float) -> Strip | None:
     inner = [curve.reversed() for curve in reversed(void)]
     for shift in range(len(inner)):
-        midline = _between([*inner[shift:], *inner[:shift]], outer, thickness)
+        wall = _Wall(thickness, [0.0])
+        midline = wall.between([*inner[shift:], *inner[:shift]], outer)
         if midline:
-            return Strip(thickness, tuple(midline), closed=True)
+            return Strip(thickness, tuple(midline), closed=True, uneven=max(wall.off))
     return None
 
 
-def _between(left: Sequence[Curve], right: Sequence[Curve], thickness: float) -> list[Curve] | None:
-    """Return the curves midway between the two sides of a wall, None if they are not everywhere `thickness` apart."""
-    midline: list[Curve] = []
-    i = j = 0
-    while i < len(left) or j < len(right):
-        a, b = left[i] if i < len(left) else None, right[j] if j < len(right) else None
-        at_a = a.start if a else left[-1].end
-        at_b = b.start if b else right[-1].end
-        if a and b and (middle := _midway(a, b, thickness)):
-            i, j = i + 1, j + 1
-        elif a and (middle := _about(a, at_b, thickness)):
-            i += 1
-        elif b and (middle := _about(b, at_a, thickness)):
-            j += 1
-        else:
-            return None
-        midline.append(middle)
-    return midline
+@dataclass(frozen=True, slots=True)
+class _Wall:
+    """Walks along both sides of a wall of a thickness; `off` gathers by what share of it they were found to differ."""
 
+    thickness: float
+    off: list[float]
 
-def _midway(a: Curve, b: Curve, thickness: float) -> Curve | None:
-    near = EVEN * thickness
-    if isinstance(a, Line) and isinstance(b, Line):
-        along = (b.end - b.start) / b.length
-        apart = [((z - b.start) * along.conjugate()).imag for z in (a.start, a.end)]
-        forward = ((a.end - a.start) * along.conjugate()).real > 0.0
-        if forward and all(abs(d - thickness) < near for d in apart):
-            return Line(0.5 * (a.start + b.start), 0.5 * (a.end + b.end))
-    if isinstance(a, Arc) and isinstance(b, Arc):
-        alike = abs(a.sweep - b.sweep) < EVEN and abs(a.centre - b.centre) < near
-        if alike and abs(abs(a.radius - b.radius) - thickness) < near:
-            return Arc(0.5 * (a.start + b.start), 0.5 * (a.spoke + b.spoke), a.sweep)
-    return None
+    def between(self, left: Sequence[Curve], right: Sequence[Curve]) -> list[Curve] | None:
+        """Return the curves midway between the two sides, None if they are not everywhere `thickness` apart."""
+        midline: list[Curve] = []
+        i = j = 0
+        while i < len(left) or j < len(right):
+            a, b = left[i] if i < len(left) else None, right[j] if j < len(right) else None
+            at_a = a.start if a else left[-1].end
+            at_b = b.start if b else right[-1].end
+            if a and b and (middle := self._midway(a, b)):
+                i, j = i + 1, j + 1
+            elif a and (middle := self._about(a, at_b)):
+                i += 1
+            elif b and (middle := self._about(b, at_a)):
+                j += 1
+            else:
+                return None
+            midline.append(middle)
+        return midline
 
+    def _near(self, *distances: float) -> bool:
+        shares = [abs(d) / self.thickness for d in distances]
+        if max(shares) >= EVEN:
+            return False
+        self.off.extend(shares)
+        return True
 
-def _about(arc: Curve, corner: complex, thickness: float) -> Curve | None:
-    """Return the midline of an outer arc about a sharp inner corner."""
-    near = EVEN * thickness
-    if isinstance(arc, Arc) and abs(arc.radius - thickness) < near and abs(arc.centre - corner) < near:
-        return Arc(0.5 * (arc.start + corner), 0.5 * arc.spoke, arc.sweep)
-    return None
+    def _midway(self, a: Curve, b: Curve) -> Curve | None:
+        if isinstance(a, Line) and isinstance(b, Line):
+            along = (b.end - b.start) / b.length
+            apart = [((z - b.start) * along.conjugate()).imag - self.thickness for z in (a.start, a.end)]
+            forward = ((a.end - a.start) * along.conjugate()).real > 0.0
+            if forward and self._near(*apart):
+                return Line(0.5 * (a.start + b.start), 0.5 * (a.end + b.end))
+        if isinstance(a, Arc) and isinstance(b, Arc) and abs(a.sweep - b.sweep) < EVEN:
+            wall = abs(a.radius - b.radius) - self.thickness
+            if self._near(wall, abs(a.centre - b.centre)):
+                return Arc(0.5 * (a.start + b.start), 0.5 * (a.spoke + b.spoke), 0.5 * (a.sweep + b.sweep))
+        return None
+
+    def _about(self, arc: Curve, corner: complex) -> Curve | None:
+        """Return the midline of an outer arc about a sharp inner corner."""
+        if isinstance(arc, Arc) and self._near(arc.radius - self.thickness, abs(arc.centre - corner)):
+            return Arc(0.5 * (arc.start + corner), 0.5 * arc.spoke, arc.sweep)
+        return None
 
 
 def thin_walled(strip: Strip) -> ThinWalled:
