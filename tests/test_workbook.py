@@ -42,7 +42,7 @@ def test_properties_at_full_precision_with_unit_and_error(tmp_path: Path) -> Non
     assert (code, err) == (0, "")
     assert "second moment about x" in out
     book = read(target)
-    assert book.sheetnames == ["Properties", "Reading", "Findings"]
+    assert book.sheetnames == ["Properties", "Reading", "Findings", "Flats and bends", "The blank"]
     sheet = book["Properties"]
     assert sheet.freeze_panes == "D3"
     titles, heads, *rows = rows_of(sheet)

@@ -48,7 +48,7 @@ def strip_blocks(section: SectionResult) -> tuple[Block, ...]:
     heads = ("no.", "", f"midline {unit}", "angle °", "", f"inside radius {unit}", f"in the blank {unit}")
     start = "the longest flat" if unrolled.closed else "its left end"
     pieces = Block(
-        "Flats and bends, along the strip",
+        "Flats and bends",
         heads,
         tuple(rows),
         (f"From {start}; left and right as seen along it. Numbers as in the figure.",),
