@@ -27,6 +27,7 @@ ROOMS = [
     "compare",
     "analysis",
     "doubts",
+    "lettered",
     "measuring",
     "results",
     "section",

@@ -12,6 +12,7 @@ from edgetally.drawing.loading import load
 from edgetally.drawing.reading import DrawingFile, Reading, by_hatches
 from edgetally.errors import DrawingError, OutlineError, UsageError
 from edgetally.findings import Finding
+from edgetally.lettered.comparing import lettered_findings
 from edgetally.measuring import measure
 from edgetally.outline.assembly import assemble
 from edgetally.outline.choosing import choose
@@ -95,6 +96,7 @@ def analyse(
         for section_name, regions in chosen
     )
     findings += [f for f in (size_finding(s, unit_source) for s in sections) if f is not None][:1]
+    findings += lettered_findings(drawing.lettering, outline, sections)
     record = DrawingRecord(
         name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
     )

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
+from functools import cached_property
 
 from ezdxf.document import Drawing as Document
 
@@ -15,6 +16,7 @@ from edgetally.drawing.entities import ANNOTATION, UnreadError, curves_of, is_fi
 from edgetally.drawing.hatches import boundary_of
 from edgetally.drawing.labels import labels_of
 from edgetally.drawing.layers import NEVER_PLOTTED, Layers
+from edgetally.drawing.lettering import Lettering, lettering_of
 from edgetally.drawing.limits import MAX_CURVES
 from edgetally.drawing.loading import Loaded
 from edgetally.errors import DrawingError
@@ -73,7 +75,12 @@ class DrawingFile:
 
     def labels(self) -> list[tuple[str, complex]]:
         """Return the short texts of model space with their places."""
-        return [(label.words, label.at) for label in labels_of(self.document, self.layers)]
+        return [(label.words, label.at) for label in labels_of(self.lettering)]
+
+    @cached_property
+    def lettering(self) -> list[Lettering]:
+        """The visible texts of model space."""
+        return lettering_of(self.document, self.layers)
 
     def dimension_findings(self, scale: float) -> list[Finding]:
         """Return what the dimensions of the drawing say against the scale taken."""

@@ -51,14 +51,22 @@ def choose(
 
 def names_of(regions: Sequence[Region], labels: Sequence[tuple[str, complex]]) -> list[list[str]]:
     """Return for each region the texts that it is the innermost one around."""
-    innermost: dict[int, int] = {}
+    around = innermost_around(regions, [p for _, p in labels])
+    return [[words for (words, _), k in zip(labels, around, strict=True) if k == n] for n in range(len(regions))]
+
+
+def innermost_around(regions: Sequence[Region], points: Sequence[complex]) -> list[int | None]:
+    """Return for each point the region whose outer boundary is the innermost one around it, None where none is."""
+    innermost: list[int | None] = [None] * len(points)
     for k in sorted(range(len(regions)), key=lambda k: -regions[k].outer.area):
         x0, y0, x1, y1 = regions[k].box
-        near = [n for n, (_, p) in enumerate(labels) if x0 <= p.real <= x1 and y0 <= p.imag <= y1]
+        near = [n for n, p in enumerate(points) if x0 <= p.real <= x1 and y0 <= p.imag <= y1]
         if near:
-            turns = regions[k].outer.packed.turning(np.array([labels[n][1] for n in near]))
-            innermost |= {n: k for n, turn in zip(near, turns, strict=True) if abs(turn) > np.pi}
-    return [[words for n, (words, _) in enumerate(labels) if innermost.get(n) == k] for k in range(len(regions))]
+            turns = regions[k].outer.packed.turning(np.array([points[n] for n in near]))
+            for n, turn in zip(near, turns.tolist(), strict=True):
+                if abs(turn) > np.pi:
+                    innermost[n] = k
+    return innermost
 
 
 def describe(regions: Sequence[Region], unit: str, names: Sequence[Sequence[str]] = ()) -> list[str]:
