@@ -29,7 +29,8 @@ BRACKET = SAMPLES / "bracket.dxf"
 def test_table_is_aligned_and_has_units() -> None:
     code, out, err = run("tally", BRACKET, "--layer", "OUTLINE", "--density", "aluminium")
     assert (code, err) == (0, "")
-    rows = [line for line in out.splitlines() if line.startswith("  ")][1:]
+    properties = out.partition("Dimensions on the drawing")[0]
+    rows = [line for line in properties.splitlines() if line.startswith("  ")][1:]
     assert len(rows) == len(KEYS)
     points = {line.rindex(".") for line in rows if "." in line[48:]}
     assert len(points) == 1

@@ -98,7 +98,15 @@ def analyse(
     findings += [f for f in (size_finding(s, unit_source) for s in sections) if f is not None][:1]
     findings += lettered_findings(drawing.lettering, outline, sections)
     record = DrawingRecord(
-        name or drawing.name, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading
+        name or drawing.name,
+        drawing.sha256,
+        drawing.dxf_version,
+        unit,
+        unit_source,
+        scale,
+        drawn_gap,
+        reading,
+        drawing.dimensions,
     )
     return Analysis(record, outline, sections, tuple(findings), out_unit, kg_per_m3, poisson)
 

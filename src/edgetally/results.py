@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import Any
 
+from edgetally.drawing.dimensions import DimensionRow
 from edgetally.drawing.reading import Reading
 from edgetally.findings import Finding, Severity, worst
 from edgetally.outline.records import Outline, Region
@@ -39,6 +40,7 @@ class DrawingRecord:
     scale: float
     join_gap: float
     reading: Reading
+    dimensions: tuple[DimensionRow, ...] = ()
 
 
 @dataclass(frozen=True, eq=False)

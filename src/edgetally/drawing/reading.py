@@ -11,7 +11,7 @@ from ezdxf.document import Drawing as Document
 
 from edgetally.curves import Curve, Source
 from edgetally.drawing.blocks import Blocks, Leaf
-from edgetally.drawing.dimensions import dimension_findings, dimensions_of
+from edgetally.drawing.dimensions import DimensionRow, dimension_findings, dimensions_of
 from edgetally.drawing.entities import ANNOTATION, UnreadError, curves_of, is_fitted, source_of
 from edgetally.drawing.hatches import boundary_of
 from edgetally.drawing.labels import labels_of
@@ -84,7 +84,12 @@ class DrawingFile:
 
     def dimension_findings(self, scale: float) -> list[Finding]:
         """Return what the dimensions of the drawing say against the scale taken."""
-        return dimension_findings(dimensions_of(self.document, self.layers), scale)
+        return dimension_findings(self.dimensions, scale)
+
+    @cached_property
+    def dimensions(self) -> tuple[DimensionRow, ...]:
+        """The visible dimensions of lengths in model space."""
+        return tuple(dimensions_of(self.document, self.layers))
 
     def header_unit(self) -> tuple[str | None, str]:
         """Return the unit that `$INSUNITS` names, None where no section is drawn in it, and the header's words."""

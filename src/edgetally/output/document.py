@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from edgetally import __version__
+from edgetally.output.dimension_table import dimension_rows
 
 if TYPE_CHECKING:
     from edgetally.results import Analysis, SectionResult
@@ -36,6 +37,7 @@ def document(analysis: Analysis) -> dict[str, Any]:
                 ],
                 "on_other_layers": reading.elsewhere,
             },
+            "dimensions": dimension_rows(analysis),
         },
         "sections": [_section(section) for section in analysis.sections],
         "findings": [finding.to_dict() for finding in analysis.findings],

@@ -8,7 +8,8 @@ from collections import defaultdict
 from typing import TYPE_CHECKING
 
 from edgetally.findings import RANK, Finding
-from edgetally.output.blocks import whole_part
+from edgetally.output.blocks import block_lines, whole_part
+from edgetally.output.dimension_table import dimension_block
 from edgetally.output.numbers import value_text
 from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
 from edgetally.output.words import CAUTION, described, evidence, header_fields
@@ -36,6 +37,9 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
         if len(analysis.sections) > 1 or len(analysis.outline.regions) > 1:
             lines.append(f"section {section.name}")
         lines += property_lines(section, symbols, SHORT_KEYS if short else KEYS, analysis)
+    dimensions = None if short else dimension_block(analysis)
+    if dimensions is not None:
+        lines += ["", *block_lines(dimensions)]
     findings = finding_lines(analysis.all_findings, analysis)
     if findings:
         lines += ["", "findings", *findings]
