@@ -14,8 +14,9 @@ from edgetally.errors import DrawingError, OutlineError, UsageError
 from edgetally.findings import Finding
 from edgetally.lettered.comparing import lettered_findings
 from edgetally.measuring import measure
+from edgetally.outline.apart import assemble_sound
 from edgetally.outline.assembly import assemble
-from edgetally.outline.choosing import choose
+from edgetally.outline.choosing import EACH, TOGETHER, choose, numbers_of
 from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
 from edgetally.results import Analysis, DrawingRecord, Wanted
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
@@ -77,17 +78,19 @@ def analyse(
     findings += drawing.dimension_findings(scale)
     drawn_gap = gap * length_factor(gap_unit, unit)
     try:
-        outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
+        some = select not in (None, TOGETHER)
+        outline = (assemble_sound if some else assemble)(reading.curves, gap=drawn_gap, unit=unit)
     except OutlineError as error:
         raise with_skips(error, reading) from None
     findings += outline.findings
     findings += [join_finding(join, unit) for join in outline.joins]
     findings += hatch_findings(reading, outline, drawn_gap, unit)
-    several = len(outline.regions) > 1 and select not in ("each", "together")
-    chosen = choose(outline.regions, select, unit, drawing.labels() if several else ())
+    several = len(outline.regions) + len(outline.left_out) > 1 and select not in (EACH, TOGETHER)
+    chosen = choose(outline.regions, select, unit, drawing.labels() if several else (), outline.left_out)
+    numbers, _ = numbers_of(outline.regions, outline.left_out)
     for number in outline.islands:
         x0, y0, _, _ = outline.regions[number].box
-        text = f"part {number + 1} lies inside a void of another part"
+        text = f"part {numbers[number]} lies inside a void of another part"
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
     wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None)

@@ -32,8 +32,8 @@ def standing_of(points: Sequence[complex], outline: Outline, sections: Sequence[
     """Return where each point stands: in the section whose outer boundary is the innermost around it, else by the one
     whose box is nearest; by all whose boxes are about as near."""
     owner = {id(region): k for k, section in enumerate(sections) for region in section.drawn}
-    boxes: list[Box] = [region.box for region in outline.regions]
-    owners = [owner.get(id(region)) for region in outline.regions]
+    boxes: list[Box] = [*(region.box for region in outline.regions), *(left.box for left in outline.left_out)]
+    owners = [*(owner.get(id(region)) for region in outline.regions), *(None for _ in outline.left_out)]
     return [
         _standing([inside] if inside is not None else _nearest(p, boxes), owners, sections)
         for p, inside in zip(points, innermost_around(outline.regions, points), strict=True)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -14,9 +15,9 @@ from edgetally.outline.crossings import refuse_contact, refuse_crossings
 from edgetally.outline.duplicates import without_duplicates
 from edgetally.outline.joining import DEFAULT_GAP_MM, ROUNDING, close_loops
 from edgetally.outline.nesting import nest
-from edgetally.outline.records import Loop, Outline
+from edgetally.outline.records import Join, Loop, Outline
 from edgetally.outline.senses import rough_areas
-from edgetally.outline.words import at, handles, place
+from edgetally.outline.words import at, handles, place, stray_finding
 from edgetally.units import MM_PER
 
 FLAT = 1e-12
@@ -25,36 +26,49 @@ DOUBTFUL = 10 * FLAT
 """Below this share the area is integrated before it is decided."""
 
 
+@dataclass(frozen=True, eq=False)
+class Closing:
+    """Closed loops that do not meet each other, with their signed areas, and what was done on the way."""
+
+    loops: list[Loop]
+    areas: NDArray[np.float64]
+    joins: list[Join]
+    findings: list[Finding]
+
+
 def assemble(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "mm") -> Outline:
     """Join `curves` to loops and the loops to regions with voids.
 
     `gap` is the join gap in `unit`, the drawing's unit; the default is 0.01 mm. Raises OutlineError with places,
     handles and a remedy for an open chain, a branch, a join too wide, a crossing, a loop without area, no loop at all.
     """
-    kept, specks = _without_specks(curves)
-    cleared = without_duplicates(kept)
-    closed = close_loops(cleared.curves, DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap, unit)
+    kept, specks = without_specks(curves)
+    closing = closing_of(kept, default_gap(gap, unit), unit)
+    regions, islands = nest(closing.loops, closing.areas)
+    return Outline(tuple(regions), tuple(closing.joins), tuple(islands), (*specks, *closing.findings))
+
+
+def default_gap(gap: float | None, unit: str) -> float:
+    """Return the join gap in the drawing's unit, 0.01 mm where none is given."""
+    return DEFAULT_GAP_MM / MM_PER[unit] if gap is None else gap
+
+
+def closing_of(curves: Sequence[Curve], gap: float, unit: str) -> Closing:
+    """Do all that comes before nesting: duplicates, joining, crossings. Raises OutlineError as `assemble` says."""
+    cleared = without_duplicates(curves)
+    closed = close_loops(cleared.curves, gap, unit)
     loops = closed.loops
     if not loops:
-        raise OutlineError("no curve there encloses an area")
+        message = "no curve there encloses an area"
+        raise OutlineError(message, [Finding("open-chain", "error", message)])
     refuse_crossings(loops)
     refuse_contact(closed.strays, loops)
     areas, perimeters = rough_areas(loops)
     _refuse_flat(loops, areas, perimeters)
-    regions, islands = nest(loops, areas)
-    findings = [*specks, *cleared.findings, *map(_stray, closed.strays)]
-    return Outline(tuple(regions), tuple(closed.joins), tuple(islands), tuple(findings))
+    return Closing(loops, areas, closed.joins, [*cleared.findings, *map(stray_finding, closed.strays)])
 
 
-def _stray(curve: Curve) -> Finding:
-    message = (
-        f"{curve.source} from {place(curve.start)} to {place(curve.end)} belongs to no outline and was left out; move "
-        "it to another layer"
-    )
-    return Finding("stray-curve", "warning", message, at(curve.start), handles((curve.source,)))
-
-
-def _without_specks(curves: Sequence[Curve]) -> tuple[list[Curve], list[Finding]]:
+def without_specks(curves: Sequence[Curve]) -> tuple[list[Curve], list[Finding]]:
     """Leave out what is no longer than the rounding of the coordinates: its neighbours meet without it."""
     magnitude = max((abs(p) for c in curves for p in (c.start, c.end)), default=0.0)
     kept = [c for c in curves if c.length > ROUNDING * magnitude]

@@ -69,8 +69,7 @@ def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
 def _strays(ends: Ends, partner: Indices, clear: float) -> list[int]:
     """Return the curves that no outline can miss: both ends meet nothing within `clear`, and little is enclosed."""
     alone = np.flatnonzero((partner[0::2] < 0) & (partner[1::2] < 0))
-    chords = np.abs(ends.z[1::2] - ends.z[0::2])
-    candidates = [k for k in map(int, alone) if ends.curves[k].length <= STRAIGHT * chords[k]]
+    candidates = [k for k in map(int, alone) if is_nearly_straight(ends.curves[k])]
     if not candidates:
         return []
     tree = shapely.STRtree(shapely.points(ends.z.real, ends.z.imag))
@@ -78,6 +77,11 @@ def _strays(ends: Ends, partner: Indices, clear: float) -> list[int]:
     here, there = tree.query(shapely.points(ends.z[at].real, ends.z[at].imag), predicate="dwithin", distance=clear)
     crowded = {int(at[i]) // 2 for i, j in zip(here, there, strict=True) if at[i] // 2 != j // 2}
     return [k for k in candidates if k not in crowded]
+
+
+def is_nearly_straight(curve: Curve) -> bool:
+    """Tell whether a curve alone cannot be meant as a boundary."""
+    return curve.length <= STRAIGHT * abs(curve.end - curve.start)
 
 
 def closes(curves: Sequence[Curve], gap: float) -> bool:

@@ -101,7 +101,7 @@ def _at_points(ends: Ends) -> tuple[Indices, list[list[int]]]:
     points = shapely.points(spots.real, spots.imag)
     one, other = shapely.STRtree(points).query(points, predicate="dwithin", distance=ends.rounding)
     keep = one < other
-    group = _linked(one[keep], other[keep], len(spots))[spot]
+    group = linked(one[keep], other[keep], len(spots))[spot]
     order = np.argsort(group, kind="stable")
     first = np.flatnonzero(np.diff(group[order], prepend=-1))
     count = np.diff(first, append=len(order))
@@ -110,7 +110,7 @@ def _at_points(ends: Ends) -> tuple[Indices, list[list[int]]]:
     return np.column_stack([order[pairs], order[pairs + 1]]), sorted(crowds)
 
 
-def _linked(one: Indices, other: Indices, count: int) -> Indices:
+def linked(one: Indices, other: Indices, count: int) -> Indices:
     """Number the groups of 0 … count − 1 that the links (one, other) make: each by the least of its members."""
     group = np.arange(count)
     while True:

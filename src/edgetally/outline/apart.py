@@ -1,0 +1,170 @@
+"""Sound outlines on a layer that holds faulty ones: which can be measured all the same, and what is left out.
+
+A **group** is curves whose boxes hang together; no step before nesting looks beyond it. Where the whole layer is
+refused and one outline, or each by itself, is asked for, the groups are assembled apart. An outline that has a faulty
+curve inside, or that faulty curves may enclose, is left out too, since its voids, or its being a void, are unknown.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from math import radians
+
+import numpy as np
+from numpy.typing import NDArray
+
+from edgetally.curves import Curve, Packed
+from edgetally.errors import OutlineError
+from edgetally.findings import Finding
+from edgetally.outline.assembly import Closing, assemble, closing_of, default_gap, without_specks
+from edgetally.outline.candidates import Indices, near_pairs
+from edgetally.outline.gaps import WIDEST_GAP_MM
+from edgetally.outline.joining import is_nearly_straight
+from edgetally.outline.nesting import nest
+from edgetally.outline.pairing import linked
+from edgetally.outline.records import LeftOut, Outline, Region
+from edgetally.outline.words import place, stray_finding
+from edgetally.units import MM_PER
+
+REACH = 1e-8
+"""Curves nearer than this share of the drawing's extent are of one group: ten times what counts as a touch."""
+
+VIEW = radians(60.0)
+"""An outline that faulty curves leave no wider view than this may be a void of what they were meant to be."""
+POINTS = 8
+
+
+@dataclass(eq=False)
+class _Sorted:
+    """What came of the groups: closed loops, faulty groups with their refusals, single curves that are no outline."""
+
+    closings: list[Closing] = field(default_factory=list)
+    faulty: list[tuple[list[Curve], OutlineError]] = field(default_factory=list)
+    strays: list[Curve] = field(default_factory=list)
+
+
+def assemble_sound(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "mm") -> Outline:
+    """Do what `assemble` does; where it refuses, give the outlines that no fault concerns, and what is left out.
+
+    Raises the refusal of `assemble` where no outline is sound, or all hangs together.
+    """
+    try:
+        return assemble(curves, gap=gap, unit=unit)
+    except OutlineError as error:
+        refusal = error
+    gap = default_gap(gap, unit)
+    kept, findings = without_specks(curves)
+    groups = _groups(kept, max(gap, WIDEST_GAP_MM / MM_PER[unit]))
+    found = _Sorted()
+    if len(groups) > 1:
+        _sort(groups, gap, unit, found)
+    if not found.closings:
+        raise refusal
+    loops = [loop for closing in found.closings for loop in closing.loops]
+    regions, islands = nest(loops, np.concatenate([closing.areas for closing in found.closings]))
+    left = [_left_out(faulty, error) for faulty, error in found.faulty]
+    open_boxes = np.array([each.box for each in left])
+    if found.strays:
+        open_boxes = np.vstack([open_boxes.reshape(-1, 4), Packed.of(found.strays).boxes])
+    left_regions = {
+        k: cause for k, region in enumerate(regions) if (cause := _concern(region, left, open_boxes)) is not None
+    }
+    left += [_beside(regions[k], reason) for k, reason in left_regions.items()]
+    kept_regions = [k for k in range(len(regions)) if k not in left_regions]
+    if not kept_regions:
+        raise refusal
+    findings += [finding for closing in found.closings for finding in closing.findings]
+    findings += [*map(stray_finding, found.strays), *(each.finding for each in left)]
+    return Outline(
+        tuple(regions[k] for k in kept_regions),
+        tuple(join for closing in found.closings for join in closing.joins),
+        tuple(n for n, k in enumerate(kept_regions) if k in islands),
+        tuple(findings),
+        tuple(left),
+    )
+
+
+def _groups(curves: Sequence[Curve], reach: float) -> list[list[Curve]]:
+    boxes = Packed.of(curves).boxes
+    reach = max(reach, REACH * float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max()))
+    group: Indices = np.arange(len(curves))
+    for one, other in near_pairs(boxes, reach):
+        group = linked(group[one], group[other], len(curves))[group]
+    members: dict[int, list[Curve]] = {}
+    for curve, number in zip(curves, group.tolist(), strict=True):
+        members.setdefault(number, []).append(curve)
+    return list(members.values())
+
+
+def _sort(groups: list[list[Curve]], gap: float, unit: str, found: _Sorted) -> None:
+    """Close the groups, all at once where they are sound; halves of them where not. Few faults cost few attempts."""
+    try:
+        found.closings.append(closing_of([curve for group in groups for curve in group], gap, unit))
+    except OutlineError as error:
+        if len(groups) > 1:
+            half = len(groups) // 2
+            _sort(groups[:half], gap, unit, found)
+            _sort(groups[half:], gap, unit, found)
+        elif len(groups[0]) == 1 and is_nearly_straight(groups[0][0]):
+            found.strays.append(groups[0][0])
+        else:
+            found.faulty.append((groups[0], error))
+
+
+def _left_out(curves: list[Curve], error: OutlineError) -> LeftOut:
+    box = Packed.of(curves).box
+    first = error.findings[0]
+    more = f" (and {len(error.findings) - 1} more faults there)" if len(error.findings) > 1 else ""
+    text = f"{_where(box)} was left out: {first.message}{more}"
+    return LeftOut(tuple(curves), box, Finding(first.code, "warning", text, first.at, first.handles))
+
+
+def _beside(region: Region, cause: LeftOut) -> LeftOut:
+    curves = tuple(curve for loop in region.loops for curve in loop.curves)
+    why = "faulty curves lie inside it" if _holds(region, cause) else "it may be a void of the faulty curves around it"
+    text = f"{_where(region.box)} was left out, because {why}: {cause.finding.message}"
+    return LeftOut(curves, region.box, Finding(cause.finding.code, "warning", text, cause.finding.at))
+
+
+def _where(box: tuple[float, float, float, float]) -> str:
+    x0, y0, x1, y1 = box
+    return f"the outline from {place(complex(x0, y0))} to {place(complex(x1, y1))}"
+
+
+def _concern(region: Region, left: Sequence[LeftOut], boxes: NDArray[np.float64]) -> LeftOut | None:
+    """Return what was left out and lies inside the region, or may lie around it; None where all keeps clear.
+
+    `boxes` are those of all curves that close to no outline: many of them together may be what is around.
+    """
+    x0, y0, x1, y1 = region.box
+    for each in left:
+        a0, b0, a1, b1 = each.box
+        if a1 < x0 or x1 < a0 or b1 < y0 or y1 < b0:
+            continue
+        if (a0 <= x0 and x1 <= a1 and b0 <= y0 and y1 <= b1) or _holds(region, each):
+            return each
+    # the boundary is enclosed or not as a whole: where one of its points looks out, it is not
+    some = region.outer.curves[:: max(1, len(region.outer.curves) // POINTS)]
+    return left[0] if left and all(_widest_view(curve.start, boxes) < VIEW for curve in some) else None
+
+
+def _widest_view(p: complex, boxes: NDArray[np.float64]) -> float:
+    """Return the widest angle [rad] in which none of the `boxes` (n, 4) is seen from p."""
+    x0, y0, x1, y1 = (boxes - np.array([p.real, p.imag, p.real, p.imag])).T
+    if np.any((x0 <= 0) & (x1 >= 0) & (y0 <= 0) & (y1 >= 0)):
+        return 0.0
+    corners = np.angle(np.stack([x + 1j * y for x in (x0, x1) for y in (y0, y1)]))
+    aside = np.mod(corners - corners[0] + np.pi, 2 * np.pi) - np.pi  # a box outside of which p lies spans less than π
+    begin = np.mod(corners[0] + aside.min(axis=0), 2 * np.pi)
+    order = np.argsort(begin)
+    end = (begin + np.ptp(aside, axis=0))[order]
+    begin = np.concatenate([begin[order], begin[order] + 2 * np.pi])  # twice around, for what goes on past the first
+    reached = np.maximum.accumulate(np.concatenate([end, end + 2 * np.pi]))
+    return float((begin[1:] - reached[:-1]).max(initial=0.0, where=np.arange(1, len(begin)) >= len(order)))
+
+
+def _holds(region: Region, left: LeftOut) -> bool:
+    """Tell whether a curve that was left out starts within the outer boundary; none crosses it."""
+    starts = np.array([curve.start for curve in left.curves])
+    return bool(np.any(np.abs(region.outer.packed.turning(starts)) > np.pi))
