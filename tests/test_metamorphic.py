@@ -249,7 +249,8 @@ def test_a_section_drawn_in_any_way_gives_one_answer(
     tmp_path_factory: pytest.TempPathFactory, contours: list[Contour], way: Way
 ) -> None:
     true = area_properties(section_of([curve for contour in contours for curve in contour])).properties
-    analysis = analyse_area(written(tmp_path_factory.mktemp("way") / "way.dxf", contours, way), layer="OUTLINE")
+    path = written(tmp_path_factory.mktemp("way") / "way.dxf", contours, way)
+    analysis = analyse_area(path, layer="OUTLINE", units="mm")  # R12 names no unit
     (section,) = analysis.sections
     assert len(section.drawn[0].voids) == len(contours) - 1
     assert [f.code for f in analysis.findings if f.severity != "note"] == []
