@@ -205,6 +205,15 @@ def test_a_sound_layer_is_assembled_as_ever() -> None:
     assert other.left_out == ()
 
 
+@pytest.mark.parametrize("nothing", [[], [Line(0j, 10 + 0j)], BOW])
+def test_where_nothing_is_sound_the_refusal_is_the_same(nothing: list[Curve]) -> None:
+    with pytest.raises(OutlineError) as one:
+        assemble(nothing)
+    with pytest.raises(OutlineError) as other:
+        assemble_sound(nothing)
+    assert str(one.value) == str(other.value)
+
+
 def test_many_outlines_with_few_faults() -> None:
     """400 squares of which three cross others; each of the rest is found."""
     curves = [piece for k in range(400) for piece in box(20 * (k % 20), 20 * (k // 20), 10, 10)]

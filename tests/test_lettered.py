@@ -67,7 +67,7 @@ def test_what_a_line_states(line: str, letter: str, under: str, number: float, u
     ["SCALE 1:2", "A-A", "A4", "SECTION A-A", "VIEW A: 1:2", "M = 1:2", "M 1:5", "R2 = 5", "R 5", "IT7", "WEIGHT 12 kg",
      "A = 12.4 kN", "P = 5 kN", "m = 3.2 kg/m2", "A = 5 holes", "POS. 12", "DWG NO. A 1234", "P=12 TYP", "ISO 2768-m",
      "EN AW-6063 T66", "NOTES 1. A = B", "Ix", "A =", "W = 3.2 kg/m3", "A = 3°", "M = 12 %", "A1 = 20", "P.A = 3",
-     "MAX 5", "3 x A = 4 x 5", "RZ = 6,3 µm", ""],
+     "MAX 5", "S = 5", "I = 3", "Z = 2", "3 x A = 4 x 5", "RZ = 6,3 µm", ""],
 )  # fmt: skip
 def test_what_states_nothing(line: str) -> None:
     assert statements_of(line) == []
@@ -116,7 +116,7 @@ def compared(
      "Ix = 720 000 mm4",
      "I_y = 32.0 cm⁴", "Wx = 24 cm3", "W = 16 cm3", "P = 20 cm", "PERIMETER: 200 mm", "U = 0.2 m2/m", "ix = 17.3 mm",
      "A = 3.72 in²", "Ix = 72", "Ix = 720000", "A = 24", "I1 = 72 cm4", "Imin = 32 cm4", "Ip = 104 cm4",
-     "kg/m 18,84", "G = 6.48 kg/m", "A = 0.0024 m2"],
+     "W = 18.84", "I = 72 cm4", "S = 24 cm3", "Z = 16 cm3", "kg/m 18,84", "G = 6.48 kg/m", "A = 0.0024 m2"],
 )  # fmt: skip
 def test_what_agrees_is_a_note(tmp_path: Path, text: str) -> None:
     ((code, severity, message),) = compared(tmp_path, [text])
@@ -142,7 +142,7 @@ def test_a_lone_letter_without_a_unit_is_a_warning_to_nobody(tmp_path: Path) -> 
         ((code, severity, message),) = compared(tmp_path, [text])
         assert (code, severity) == ("lettered-differs", "note")
         assert "no unit" in message
-    assert compared(tmp_path, ["A = 20 mm", "P = 5 cm2", "W = 20 mm", "SCALE 1:2", "A4"]) == []
+    assert compared(tmp_path, ["A = 20 mm", "P = 5 cm2", "S = 20 mm", "I = 5 m", "W = 20 mm", "SCALE 1:2", "A4"]) == []
 
 
 @pytest.mark.parametrize(

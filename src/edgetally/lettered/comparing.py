@@ -116,13 +116,17 @@ def _outcome(statement: Statement, meaning: Meaning, section: SectionResult) -> 
                     f"that {why}; check which is meant"
                 )
                 return "lettered-differs", "warning", words
+    if unit is None and "mass_per_length" in meaning.keys and not _number(section, "mass_per_length"):
+        weighed = _without_density(statement, section)
+        if weighed[0] == "lettered-agrees":
+            return weighed
     if unit is None:
         either = " and ".join(f"{fit.value:.6g} {fit.unit.words}" for fit in fits if fit.key == best.key)
         words = f"it has no unit and agrees in none: the {_named(best.key)} of {{whose}} is {either}"
         return "lettered-differs", "warning" if statement.spelled else "note", words
     lettered = min((n.value for n in statement.numbers), key=lambda value: abs(value - best.value))
     share = f"{100 * (lettered / best.value - 1):+.2g} %" if best.value else "no share"
-    plastic = any(key not in section.properties for key in meaning.keys)  # Z, where no plastic modulus is computed
+    plastic = any(key.startswith("plastic") and key not in section.properties for key in meaning.keys)  # Z
     perhaps = ", unless it is a plastic modulus" if plastic else ""
     return "lettered-differs", "warning", f"{has}, the lettered value is off by {share}{perhaps}; check which is meant"
 

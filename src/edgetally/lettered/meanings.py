@@ -11,6 +11,8 @@ from dataclasses import dataclass
 
 from edgetally.lettered.statements import Statement
 
+_MOMENTS = (("second_moment", "xy"), ("principal_moment", "12"))
+
 ORIGIN = "about the drawing's origin"
 EXCHANGED = "about the other axis: the axes are exchanged, or named in another way"
 
@@ -38,7 +40,13 @@ def meaning_of(statement: Statement, axes: Collection[str]) -> Meaning | None:
         if statement.unit is not None and statement.unit.power == 0:
             meaning = Meaning(0, ("mass_per_length",))
         else:
-            meaning = Meaning(3, _moduli("x", plastic=False) + _moduli("y", plastic=False))
+            weight = ("mass_per_length",) if statement.unit is None else ()
+            meaning = Meaning(3, _moduli("x", plastic=False) + _moduli("y", plastic=False) + weight)
+    elif letter == "I" and not under:
+        meaning = Meaning(4, tuple(f"{kind}_{a}" for kind, letters in _MOMENTS for a in letters))
+    elif letter in "SZ" and not under:
+        plastic = tuple(f"plastic_modulus_{a}" for a in "xy") if letter == "Z" else ()
+        meaning = Meaning(3, _moduli("x", plastic=False) + _moduli("y", plastic=False) + plastic)
     elif letter == "J" and not under:
         meaning = Meaning(4, ("torsion_constant", "polar_moment"))
     elif under == "t":

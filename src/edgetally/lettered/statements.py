@@ -98,7 +98,9 @@ def _statement(words: str, name: re.Match[str], value: re.Match[str], unit: Lett
             return None
     elif not under:
         # a lone letter may be a mark, a size, a part: it needs its sign, and a unit that fits
-        if letter not in "APUGWJMm" or not name["sign"] or (name["sign"] == ":" and unit is None):
+        if letter not in "APUGWJMmISZ" or not name["sign"]:
+            return None
+        if unit is None and (name["sign"] == ":" or letter in "ISZ"):
             return None
         letter = letter.upper()
     else:

@@ -55,7 +55,7 @@ def assemble_sound(curves: Sequence[Curve], *, gap: float | None = None, unit: s
         refusal = error
     gap = default_gap(gap, unit)
     kept, findings = without_specks(curves)
-    groups = _groups(kept, max(gap, WIDEST_GAP_MM / MM_PER[unit]))
+    groups = _groups(kept, max(gap, WIDEST_GAP_MM / MM_PER[unit])) if kept else []
     found = _Sorted()
     if len(groups) > 1:
         _sort(groups, gap, unit, found)

@@ -59,7 +59,7 @@ def closing_of(curves: Sequence[Curve], gap: float, unit: str) -> Closing:
     closed = close_loops(cleared.curves, gap, unit)
     loops = closed.loops
     if not loops:
-        message = "no curve there encloses an area"
+        message = "no curve there encloses an area: draw a closed outline, or name its layer with --layer"
         raise OutlineError(message, [Finding("open-chain", "error", message)])
     refuse_crossings(loops)
     refuse_contact(closed.strays, loops)
