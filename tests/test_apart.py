@@ -10,6 +10,8 @@ from typing import Any
 
 import numpy as np
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from build import analyse_area as analyse
 from command import run
@@ -129,6 +131,10 @@ def test_command_measures_and_warns(tmp_path: Path) -> None:
     code, out, err = run("tally", path, "--layer", "OUTLINE")
     assert (code, out) == (2, "")
     assert "cross, touch or run over each other" in err
+    assert "1 other outline on the layer is sound: --each measures what is sound, --pick one of them" in err
+    code, out, err = run("tally", path, "--layer", "OUTLINE", "--together")
+    assert (code, out) == (2, "")
+    assert "sound" not in err
 
 
 def test_a_text_in_a_faulty_outline_is_no_name_of_its_neighbour(tmp_path: Path) -> None:
@@ -237,3 +243,53 @@ def test_the_widest_view_against_rays(seed: int) -> None:
     free = "".join("10"[hit] for hit in np.any((enters <= leaves) & (leaves >= 0), axis=1).astype(int).tolist())
     widest = min(3600, max(map(len, (free * 2).split("0")))) * 2 * np.pi / 3600
     assert _widest_view(0j, boxes) == pytest.approx(widest, abs=0.004)
+
+
+places = st.builds(complex, st.integers(0, 60), st.integers(0, 60))
+
+
+@settings(deadline=None, max_examples=80)
+@given(st.lists(st.tuples(places, st.integers(2, 44).map(lambda r: r / 3 + 0.1)), min_size=1, max_size=9, unique=True))
+def test_circles_anywhere_are_measured_only_where_no_fault_concerns_them(circles: list[tuple[complex, float]]) -> None:
+    """Circles c, r cross where |r − r′| ≤ |c − c′| ≤ r + r′, and lie in each other where |c − c′| < r′ − r: what may be
+    measured is known in closed form. It is measured, too, where the box of the only group of faults is away."""
+
+    def crosses(i: int, j: int) -> bool:
+        d = abs(circles[i][0] - circles[j][0])
+        return abs(circles[i][1] - circles[j][1]) - 1e-6 <= d <= circles[i][1] + circles[j][1] + 1e-6
+
+    def near(i: int, j: int) -> bool:
+        d, r, q = abs(circles[i][0] - circles[j][0]), circles[i][1], circles[j][1]
+        return min(abs(d - r - q), abs(d + r - q), abs(d + q - r)) < 1
+
+    def inside(i: int, j: int) -> bool:
+        return not crosses(i, j) and abs(circles[i][0] - circles[j][0]) < circles[j][1] - circles[i][1]
+
+    every = range(len(circles))
+    bad = [i for i in every if any(crosses(i, j) for j in every if j != i)]
+    around = {i: [j for j in every if inside(i, j)] for i in every}
+    fine = {}
+    for i in every:
+        if i not in bad and len(around[i]) % 2 == 0 and not any(b in around[i] or i in around[b] for b in bad):
+            voids = [j for j in every if i in around[j] and len(around[j]) == len(around[i]) + 1]
+            fine[i] = math.pi * (circles[i][1] ** 2 - sum(circles[j][1] ** 2 for j in voids))
+    try:
+        outline = assemble_sound([Arc.from_centre(c, r, 0.3, 2 * math.pi) for c, r in circles])
+    except OutlineError:
+        outline = None
+        assert bad
+    found = {}
+    for region in outline.regions if outline else ():
+        x0, y0, x1, y1 = region.box
+        (k,) = [i for i in fine if abs(complex(x0 + x1, y0 + y1) / 2 - circles[i][0]) < 1e-9
+                and abs((x1 - x0) / 2 - circles[i][1]) < 1e-9]  # fmt: skip
+        found[k] = region.area
+    assert all(found[k] == pytest.approx(fine[k], rel=1e-12) for k in found)
+    if not bad:
+        assert found.keys() == fine.keys()
+    if len(bad) == 2 and not any(near(i, j) for i in bad for j in every if j not in bad):
+        boxes = [(c.real - r, c.imag - r, c.real + r, c.imag + r) for c, r in (circles[b] for b in bad)]
+        a0, b0, a1, b1 = (pick(side) for pick, side in zip((min, min, max, max), zip(*boxes, strict=True), strict=True))
+        for k, (c, r) in ((k, circles[k]) for k in fine):
+            if c.real - r > a1 or c.real + r < a0 or c.imag - r > b1 or c.imag + r < b0:
+                assert k in found

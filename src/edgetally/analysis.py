@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from pathlib import Path
 
 from edgetally.curves import Packed
-from edgetally.doubts import hatch_findings, join_finding, size_finding, with_skips
+from edgetally.doubts import hatch_findings, join_finding, size_finding, with_skips, with_sound
 from edgetally.drawing.loading import load
 from edgetally.drawing.reading import DrawingFile, Reading, by_hatches
 from edgetally.errors import DrawingError, OutlineError, UsageError
@@ -81,7 +81,7 @@ def analyse(
         some = select not in (None, TOGETHER)
         outline = (assemble_sound if some else assemble)(reading.curves, gap=drawn_gap, unit=unit)
     except OutlineError as error:
-        raise with_skips(error, reading) from None
+        raise with_skips(with_sound(error, reading, drawn_gap, unit, select), reading) from None
     findings += outline.findings
     findings += [join_finding(join, unit) for join in outline.joins]
     findings += hatch_findings(reading, outline, drawn_gap, unit)

@@ -163,6 +163,11 @@ class DrawingFile:
         named = ", ".join(layers) or "any visible layer"
         keys = {name.casefold() for name in layers}
         message = f"nothing is drawn on {'layer ' if layers else ''}{named} in model space"
+        others = [name for name in self.visible_layers() if name.casefold() not in keys]
+        if layers and others:
+            message += (
+                f"; something is on {', '.join(others[:12])}{' …' if len(others) > 12 else ''}: name it with --layer"
+            )
         for layout in self.document.layouts:
             if layout.name != "Model":
                 count = sum(1 for e in layout if not layers or e.dxf.layer.casefold() in keys)
@@ -206,7 +211,7 @@ class _Account:
         if abs(height) > LEVEL:
             self._heights.setdefault(height, source_of(leaf))
         if len(self._curves) > MAX_CURVES:
-            message = f"the layer holds more than {MAX_CURVES} curves, which are not read"
+            message = f"the layer holds more than {MAX_CURVES} curves, which are not read: export the section alone"
             raise DrawingError(message, [Finding("limit-reached", "error", message)])
 
     def _curves_of(self, leaf: Leaf) -> list[Curve]:

@@ -1,6 +1,6 @@
 """Sound outlines on a layer that holds faulty ones: which can be measured all the same, and what is left out.
 
-A **group** is curves whose boxes hang together; no step before nesting looks beyond it. Where the whole layer is
+A **group** is curves that hang together, or may; no step before nesting looks beyond it. Where the whole layer is
 refused and one outline, or each by itself, is asked for, the groups are assembled apart. An outline that has a faulty
 curve inside, or that faulty curves may enclose, is left out too, since its voids, or its being a void, are unknown.
 """
@@ -18,7 +18,8 @@ from edgetally.curves import Curve, Packed
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
 from edgetally.outline.assembly import Closing, assemble, closing_of, default_gap, without_specks
-from edgetally.outline.candidates import Indices, near_pairs
+from edgetally.outline.candidates import Indices, apart, near_pairs
+from edgetally.outline.crossings import near_straight
 from edgetally.outline.gaps import WIDEST_GAP_MM
 from edgetally.outline.joining import is_nearly_straight
 from edgetally.outline.nesting import nest
@@ -81,15 +82,31 @@ def assemble_sound(curves: Sequence[Curve], *, gap: float | None = None, unit: s
         tuple(join for closing in found.closings for join in closing.joins),
         tuple(n for n, k in enumerate(kept_regions) if k in islands),
         tuple(findings),
-        tuple(left),
+        tuple(_outermost(left)),
     )
 
 
+def _outermost(left: Sequence[LeftOut]) -> list[LeftOut]:
+    """Return what was left out without what lies in the box of another: a tube and its faulty void are one outline."""
+    found: list[LeftOut] = []
+    for each in sorted(left, key=lambda e: (e.box[0] - e.box[2]) * (e.box[3] - e.box[1])):
+        x0, y0, x1, y1 = each.box
+        if not any(a0 <= x0 and b0 <= y0 and x1 <= a1 and y1 <= b1 for a0, b0, a1, b1 in (f.box for f in found)):
+            found.append(each)
+    return found
+
+
 def _groups(curves: Sequence[Curve], reach: float) -> list[list[Curve]]:
-    boxes = Packed.of(curves).boxes
+    packed = Packed.of(curves)
+    boxes = packed.boxes
     reach = max(reach, REACH * float((boxes[:, 2:].max(axis=0) - boxes[:, :2].min(axis=0)).max()))
     group: Indices = np.arange(len(curves))
     for one, other in near_pairs(boxes, reach):
+        straight = packed.is_straight[one] & packed.is_straight[other]
+        near = ~straight
+        near[~straight] = ~apart(packed, one[~straight], other[~straight], reach)
+        near[straight] = near_straight(packed, one, other, straight, np.full(len(one), reach))
+        one, other = one[near], other[near]
         group = linked(group[one], group[other], len(curves))[group]
     members: dict[int, list[Curve]] = {}
     for curve, number in zip(curves, group.tolist(), strict=True):

@@ -54,7 +54,7 @@ def refuse_crossings(loops: Sequence[Loop]) -> None:
         near = np.maximum(touch[one], touch[other])
         for which, decided in (
             (straight & adjacent, _folds(packed, follower, one, other, straight & adjacent)),
-            (straight & ~adjacent, _near(packed, one, other, straight & ~adjacent, near)),
+            (straight & ~adjacent, near_straight(packed, one, other, straight & ~adjacent, near)),
             (~straight & adjacent, ~_plain_joints(packed, follower, one, other, ~straight & adjacent, near)),
         ):
             suspect[which] = decided
@@ -167,7 +167,7 @@ def _plain_joints(
     return known & parting & clear
 
 
-def _near(
+def near_straight(
     packed: Packed, one: NDArray[np.intp], other: NDArray[np.intp], which: NDArray[np.bool_], touch: NDArray[np.float64]
 ) -> NDArray[np.bool_]:
     """Tell which of the chosen straight pairs cross or come nearer than `touch`."""

@@ -51,7 +51,9 @@ def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
     if pairing.meeting:
         raise _branch(ends, pairing.meeting, "at one point")
     if pairing.crowded:
-        raise _branch(ends, pairing.crowded, f"within the join gap of {length_text(gap, unit)}")
+        wide = gap * MM_PER[unit] > DEFAULT_GAP_MM * (1 + 1e-9)
+        how = f"within the join gap of {length_text(gap, unit)}"
+        raise _branch(ends, pairing.crowded, how, ", or pass a smaller --join-gap" if wide else "")
     partner = pairing.partner
     strays = _strays(ends, partner, WIDEST_GAP_MM / MM_PER[unit])
     if len(strays) == len(ends.curves) and not loops:
@@ -120,14 +122,14 @@ def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], Ends]:
     return loops, Ends(pieces, np.array([p for c in pieces for p in (c.start, c.end)], dtype=complex), rounding)
 
 
-def _branch(ends: Ends, groups: list[list[int]], how: str) -> OutlineError:
+def _branch(ends: Ends, groups: list[list[int]], how: str, also: str = "") -> OutlineError:
     findings = []
     for group in groups[:REPORTED]:
         z = complex(ends.z[group[0]])
         names = ", ".join(ends.name(e) for e in group[:6]) + (" …" if len(group) > 6 else "")
         message = (
             f"{len(group)} curve ends meet {how} at {place(z)}: {names}; an outline has two ends at each point: "
-            "remove inner lines and doubled curves, or move them to another layer"
+            f"remove inner lines and doubled curves, or move them to another layer{also}"
         )
         sources = [ends.curves[e // 2].source for e in group]
         findings.append(Finding("branch", "error", message, at(z), handles(sources)))
