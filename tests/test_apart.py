@@ -245,6 +245,17 @@ def test_the_widest_view_against_rays(seed: int) -> None:
     assert _widest_view(0j, boxes) == pytest.approx(widest, abs=0.004)
 
 
+def test_a_layer_of_faults_is_refused_without_trying_each() -> None:
+    """3000 open corners and one square: no drawing of sections."""
+    corners = [Line(complex(20 * (k // 2), 50), complex(20 * (k // 2) + 9, 50 + 9 * (k % 2))) for k in range(6000)]
+    with pytest.raises(OutlineError):
+        assemble_sound([*box(0, 0, 10, 10), *corners])
+    strays = [Line(complex(20 * k, 50), complex(20 * k + 9, 50)) for k in range(6000)]
+    outline = assemble_sound([*box(0, 0, 10, 10), *strays, *bow(100, 0)])
+    assert len(outline.regions) == 1
+    assert len(outline.left_out) == 1
+
+
 places = st.builds(complex, st.integers(0, 60), st.integers(0, 60))
 
 

@@ -11,10 +11,17 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from build import analyse_area as analyse
+from build import analyse_once
 from drawings import INCH, MM, drawing, square
+from edgetally.curves import Source
+from edgetally.drawing.lettering import Lettering
 from edgetally.findings import Finding
+from edgetally.lettered.comparing import lettered_findings
 from edgetally.lettered.numbers import readings
 from edgetally.lettered.statements import statements_of
+from edgetally.units import MM_PER
+
+SAMPLES = Path(__file__).parent.parent / "sample_drawings"
 
 NOTES = {"layer": "NOTES"}
 
@@ -270,3 +277,41 @@ def test_thousands_of_lettered_values_are_listed_in_part(tmp_path: Path) -> None
     assert [severity for _, severity, _ in found].count("warning") == 2
     assert len(found) == 61
     assert "42 more" in found[-1][2]
+
+
+LETTERS = {
+    "area": ["A", "AREA", "Section area"], "total_perimeter": ["P", "U", "perimeter"],
+    "second_moment_x": ["Ix", "I_x", "Ixx", "Jx", "IX-X"], "second_moment_y": ["Iy", "I_{y}", "Iyy"],
+    "elastic_modulus_x_top": ["Wx", "W_el,x", "Sx", "Zx"], "elastic_modulus_y_left": ["Wy", "Wel,y"],
+    "radius_of_gyration_x": ["ix", "rx"], "principal_moment_1": ["I1", "Imax", "Iu"], "polar_moment": ["Ip"],
+}  # fmt: skip
+
+
+@settings(deadline=None, max_examples=150)
+@given(
+    st.sampled_from(sorted(LETTERS)).flatmap(lambda key: st.tuples(st.just(key), st.sampled_from(LETTERS[key]))),
+    st.sampled_from(["mm", "cm", "m", "in"]),
+    st.sampled_from(["{}{}", "{} {}", "{} [{}]"]),
+    st.sampled_from([("^{}", "."), ("{}", ","), ("²³⁴", ".")]),
+    st.integers(3, 7),
+    st.sampled_from([0.0, 0.0, -0.1, 0.06]),
+)
+def test_what_is_computed_agrees_however_it_is_lettered(
+    name: tuple[str, str], unit: str, form: str, raised: tuple[str, str], digits: int, off: float
+) -> None:
+    """The value in any unit, written with 3 and more digits, agrees; one that is 6 % and more off does not."""
+    analysis = analyse_once(str(SAMPLES / "bracket.dxf"), layer="OUTLINE")
+    section = analysis.sections[0]
+    key, letter = name
+    prop = section.properties[key]
+    assert prop.value is not None
+    power = prop.unit.power
+    number = f"{prop.value / MM_PER[unit] ** power * (1 + off):.{digits - 1}e}"
+    mantissa, _, exponent = number.partition("e")
+    plain = f"{float(number):.{max(0, digits - 1 - int(exponent))}f}"
+    text = (mantissa + " x 10^" + str(int(exponent)) if len(plain) > 12 else plain).replace(".", raised[1])
+    signs, _ = raised
+    sign = "" if power == 1 else (signs[power - 2] if signs.startswith("²") else signs.format(power))
+    line = f"{letter} = " + form.format(text, unit + sign)
+    (found,) = lettered_findings([Lettering((line,), 200 + 5j, Source("TEXT", "F", "0"))], analysis.outline, [section])
+    assert (found.code == "lettered-agrees") == (off == 0.0), (line, found.message)

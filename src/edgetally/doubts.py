@@ -16,6 +16,8 @@ from edgetally.units import MM_PER
 
 SMALLEST_MM, LARGEST_MM = 6.0, 5000.0
 """The larger side of nearly every section lies between these (common practice, no source)."""
+FEW = 40
+"""So many attempts are made to find what else is sound, where nobody asked for it."""
 SAME_AREA = 1e-3
 """A hatch fills what the outline encloses to this share: CAD programs store its arcs with fewer digits."""
 
@@ -73,7 +75,7 @@ def with_sound(error: OutlineError, reading: Reading, gap: float, unit: str, sel
     if select is not None:
         return error
     try:
-        count = len(assemble_sound(reading.curves, gap=gap, unit=unit).regions)
+        count = len(assemble_sound(reading.curves, gap=gap, unit=unit, attempts=FEW).regions)
     except OutlineError:
         return error
     other = "1 other outline on the layer is" if count == 1 else f"{count} other outlines on the layer are"

@@ -34,21 +34,27 @@ REACH = 1e-8
 VIEW = radians(60.0)
 """An outline that faulty curves leave no wider view than this may be a void of what they were meant to be."""
 POINTS = 8
+ATTEMPTS = 1000
+"""So often some of the groups are tried: a layer with hundreds of faults is no drawing of sections."""
 
 
 @dataclass(eq=False)
 class _Sorted:
     """What came of the groups: closed loops, faulty groups with their refusals, single curves that are no outline."""
 
+    attempts: int
     closings: list[Closing] = field(default_factory=list)
     faulty: list[tuple[list[Curve], OutlineError]] = field(default_factory=list)
     strays: list[Curve] = field(default_factory=list)
 
 
-def assemble_sound(curves: Sequence[Curve], *, gap: float | None = None, unit: str = "mm") -> Outline:
+def assemble_sound(
+    curves: Sequence[Curve], *, gap: float | None = None, unit: str = "mm", attempts: int = ATTEMPTS
+) -> Outline:
     """Do what `assemble` does; where it refuses, give the outlines that no fault concerns, and what is left out.
 
-    Raises the refusal of `assemble` where no outline is sound, or all hangs together.
+    Raises the refusal of `assemble` where no outline is sound, all hangs together, or the faults are so many that
+    `attempts` do not part them.
     """
     try:
         return assemble(curves, gap=gap, unit=unit)
@@ -57,10 +63,12 @@ def assemble_sound(curves: Sequence[Curve], *, gap: float | None = None, unit: s
     gap = default_gap(gap, unit)
     kept, findings = without_specks(curves)
     groups = _groups(kept, max(gap, WIDEST_GAP_MM / MM_PER[unit])) if kept else []
-    found = _Sorted()
+    found = _Sorted(attempts)
     if len(groups) > 1:
-        _sort(groups, gap, unit, found)
-    if not found.closings:
+        found.strays = [group[0] for group in groups if len(group) == 1 and is_nearly_straight(group[0])]
+        alone = set(map(id, found.strays))
+        _sort([group for group in groups if id(group[0]) not in alone], gap, unit, found)
+    if not found.closings or found.attempts < 0:
         raise refusal
     loops = [loop for closing in found.closings for loop in closing.loops]
     regions, islands = nest(loops, np.concatenate([closing.areas for closing in found.closings]))
@@ -116,6 +124,9 @@ def _groups(curves: Sequence[Curve], reach: float) -> list[list[Curve]]:
 
 def _sort(groups: list[list[Curve]], gap: float, unit: str, found: _Sorted) -> None:
     """Close the groups, all at once where they are sound; halves of them where not. Few faults cost few attempts."""
+    found.attempts -= 1
+    if found.attempts < 0 or not groups:
+        return
     try:
         found.closings.append(closing_of([curve for group in groups for curve in group], gap, unit))
     except OutlineError as error:
@@ -123,8 +134,6 @@ def _sort(groups: list[list[Curve]], gap: float, unit: str, found: _Sorted) -> N
             half = len(groups) // 2
             _sort(groups[:half], gap, unit, found)
             _sort(groups[half:], gap, unit, found)
-        elif len(groups[0]) == 1 and is_nearly_straight(groups[0][0]):
-            found.strays.append(groups[0][0])
         else:
             found.faulty.append((groups[0], error))
 
