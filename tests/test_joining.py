@@ -162,6 +162,36 @@ def test_no_option_where_a_third_end_is_as_near() -> None:
     assert "pass --join-gap" not in message
 
 
+@pytest.mark.parametrize("bent", [False, True])
+def test_a_missing_end_of_a_thin_wall_is_no_gap(bent: bool) -> None:
+    """A foil of 100 × 0.1 without one of its ends: joined, its sides would meet and half of it be gone."""
+    if bent:
+        turn = math.pi / 2
+        pieces: list[Curve] = [
+            Arc.from_centre(0j, 60.0, 0.0, turn, Source("ARC", "1", "0")),
+            Line(60j, 59.9j, Source("LINE", "2", "0")),
+            Arc.from_centre(0j, 59.9, 0.0, turn, Source("ARC", "3", "0")),
+        ]
+    else:
+        pieces = lines([0.1j, 0j, 100 + 0j, 100 + 0.1j])
+        pieces = [pieces[0], pieces[1], pieces[3]]
+    for gap in (0.01, 0.1, 0.15):
+        error = refused(pieces, gap=gap)
+        assert error.findings[0].code == ("open-chain" if gap < 0.1 else "gap-too-wide")
+        assert "pass --join-gap" not in str(error)
+    assert "they run back along each other: an end is missing" in str(error)
+
+
+def test_the_gap_at_a_sharp_tip_is_joined() -> None:
+    """The tip of a wedge of 20°."""
+    tip = [0j, rect(50.0, math.radians(-10)), rect(50.0, math.radians(10))]
+    pieces = lines(tip)
+    pieces[2] = Line(tip[2], rect(0.008, math.radians(10)), pieces[2].source)
+    outline = assemble(pieces)
+    assert len(outline.joins) == 1
+    assert area(outline) == pytest.approx(0.5 * 50**2 * math.sin(math.radians(20)), rel=1e-3)
+
+
 def test_every_gap_that_is_too_wide_for_its_neighbour_is_named() -> None:
     pieces = lines([0j, 10 + 0j, 10 + 10j, 0.05 + 10j, 10j, 0.05j])
     pieces[3] = Line(0.05 + 10j, 0.008 + 10j, pieces[3].source)

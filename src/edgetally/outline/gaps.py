@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Collection
 from dataclasses import dataclass
+from math import cos, radians
 
 import numpy as np
 import shapely
@@ -22,6 +23,9 @@ WIDEST_GAP_MM = 0.15
 """Never joined, whatever is asked: ends that far apart are drawn apart."""
 NEIGHBOUR_SHARE = 0.1
 """A join may not be wider than this share of the shorter of the two curves: it would be an edge of its own."""
+BACK = cos(radians(6.0))
+"""Two curves that leave their gap in directions this near to each other run back along each other: the gap is an end
+that is missing, and as wide as the wall."""
 REPORTED = 12
 """So many places are listed in a refusal; the rest is counted."""
 
@@ -37,7 +41,7 @@ class _Gap:
 
 def refuse_wide(ends: Ends, partner: Indices, unit: str) -> None:
     """Raise OutlineError (`gap-too-wide`) where two ends that would be joined lie farther apart than a tenth of the
-    shorter of their curves."""
+    shorter of their curves, or on the two sides of a wall."""
     wide = _too_wide(ends, partner)
     if not wide:
         return
@@ -45,9 +49,12 @@ def refuse_wide(ends: Ends, partner: Indices, unit: str) -> None:
     for gap in wide[:REPORTED]:
         a, b = (ends.curves[e // 2] for e in (gap.one, gap.other))
         z = complex(ends.z[gap.one])
+        why = f"is wider than a tenth of the shorter of them ({length_text(min(a.length, b.length), unit)})"
+        if _runs_back(ends, gap):
+            why = "is all that lies between them, since they run back along each other: an end is missing"
         message = (
-            f"the gap of {length_text(gap.width, unit)} at {place(z)} between {a.source} and {b.source} is wider than "
-            f"a tenth of the shorter of them ({length_text(min(a.length, b.length), unit)}); close it in the drawing"
+            f"the gap of {length_text(gap.width, unit)} at {place(z)} between {a.source} and {b.source} {why}; close "
+            "it in the drawing"
         )
         findings.append(Finding("gap-too-wide", "error", message, at(z), handles((a.source, b.source))))
     raise refusal(findings, len(wide))
@@ -150,7 +157,17 @@ def _too_wide(ends: Ends, partner: Indices) -> list[_Gap]:
 
 
 def _may_be_joined(ends: Ends, g: _Gap) -> bool:
-    return g.width <= NEIGHBOUR_SHARE * min(ends.curves[e // 2].length for e in (g.one, g.other))
+    shorter = min(ends.curves[e // 2].length for e in (g.one, g.other))
+    return g.width <= NEIGHBOUR_SHARE * shorter and not _runs_back(ends, g)
+
+
+def _runs_back(ends: Ends, g: _Gap) -> bool:
+    """Tell whether both curves, followed out of their ends, go on in one direction."""
+    first, second = (
+        -ends.curves[e // 2].derivative(0.0) if e % 2 == 0 else ends.curves[e // 2].derivative(1.0)
+        for e in (g.one, g.other)
+    )
+    return (first.conjugate() * second).real > BACK * abs(first) * abs(second)
 
 
 def _width(ends: Ends, one: int, other: int) -> float:
