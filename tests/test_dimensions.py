@@ -10,9 +10,11 @@ import ezdxf
 import pytest
 
 from build import analyse_area as analyse
+from command import run
 from drawings import drawing, square
 from edgetally.drawing.dimensions import _number, dimension_findings, dimensions_of
 from edgetally.drawing.layers import Layers
+from edgetally.output.dimension_table import dimension_block
 
 SAMPLES = Path(__file__).parent.parent / "sample_drawings"
 REAL = Path(os.environ.get("EDGETALLY_DRAWINGS", "")) / "sections"
@@ -114,3 +116,50 @@ def test_real_drawings() -> None:
         assert "units-suspect" in codes
     for name in ("vslot-20x20", "sharp-I", "channel-MC12x31", "angle-rounded-toes"):
         assert "units-suspect" not in [f.code for f in analyse(REAL / f"{name}.dxf").findings]
+
+
+def test_the_table_of_dimensions(tmp_path: Path) -> None:
+    """Shown text, `<>` expanded, measured × DIMLFAC, difference: in the document, on the terminal, as a block."""
+
+    def draw(space: Any) -> None:
+        square(space, 40)
+        for k, text in enumerate(["<>", "25", "<> H7", "TYP", r"\A1;{\H2;39.6}"]):
+            dimension(space, (0, 0), (10.0 * (k + 1), 0) if k < 4 else (40, 0), text)
+        dimension(space, (0, 0), (5, 0), dimlfac=2.0)
+
+    path = drawing(tmp_path, draw)
+    analysis = analyse(path, layer="OUTLINE")
+    rows = analysis.to_dict()["drawing"]["dimensions"]
+    assert [(r["shown"], r["measured"], r["difference"]) for r in rows] == [
+        ("10", 10.0, 0.0), ("25", 20.0, 5.0), ("30 H7", 30.0, 0.0), ("TYP", 40.0, None),
+        ("39.6", 40.0, pytest.approx(-0.4)), ("10", 10.0, 0.0),
+    ]  # fmt: skip
+    assert {r["layer"] for r in rows} == {"NOTES"}
+    handles = [e.dxf.handle for e in ezdxf.readfile(path).modelspace().query("DIMENSION")]
+    assert [r["handle"] for r in rows] == handles
+    block = dimension_block(analysis)
+    assert block is not None
+    assert len(block.rows) == 6
+    _, out, _ = run("tally", path, "--layer", "OUTLINE")
+    (line,) = [line for line in out.splitlines() if line.split()[:1] == [f"#{handles[1]}"]]
+    assert [float(word) for word in line.split()[2:]] == [25.0, 20.0, 5.0]
+    assert "Dimensions on the drawing" in out
+
+
+def test_a_drawing_without_dimensions_has_no_table(tmp_path: Path) -> None:
+    analysis = analyse(drawing(tmp_path, square), layer="OUTLINE")
+    assert analysis.to_dict()["drawing"]["dimensions"] == []
+    assert dimension_block(analysis) is None
+
+
+def test_a_long_table_keeps_what_differs(tmp_path: Path) -> None:
+    def draw(space: Any) -> None:
+        square(space, 40)
+        for k in range(50):
+            dimension(space, (0, 0), (20, 0), "21" if k == 45 else "<>")
+
+    block = dimension_block(analyse(drawing(tmp_path, draw), layer="OUTLINE"))
+    assert block is not None
+    assert len(block.rows) == 40
+    assert block.rows[0][2] == "21"
+    assert "10 more" in block.notes[-1]

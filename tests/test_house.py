@@ -28,6 +28,7 @@ ROOMS = [
     "analysis",
     "composing",
     "doubts",
+    "lettered",
     "measuring",
     "results",
     "section",

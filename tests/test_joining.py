@@ -114,6 +114,91 @@ def test_the_option_that_is_offered_does_close_it(gap_mm: float, digits: int, sh
     assert area(closed) == pytest.approx(1e4, rel=1e-9)
 
 
+@settings(deadline=None, max_examples=60)
+@given(st.lists(st.floats(0.0, 0.15), min_size=4, max_size=9), st.sampled_from(["mm", "cm", "in"]))
+def test_of_several_gaps_the_option_closes_all(gaps_mm: list[float], unit: str) -> None:
+    """Every line of the refusal names the same value, the widest counts, and with it the outline is accepted."""
+    n = len(gaps_mm)
+    corners = [rect(40.0, 2 * math.pi * k / n) for k in range(n)]
+    pieces = lines(corners)
+    for k, g in enumerate(gaps_mm):
+        along = (corners[(k + 1) % n] - corners[k]) / abs(corners[(k + 1) % n] - corners[k])
+        pieces[k] = Line(corners[k], corners[(k + 1) % n] - along * g / MM_PER[unit], pieces[k].source)
+    if max(gaps_mm) <= 0.01 + 1e-9:
+        return
+    message = str(refused(pieces, unit=unit))
+    options = set(re.findall(r"pass --join-gap ([\d.]+)mm", message))
+    assert len(options) == 1
+    option = float(options.pop())
+    assert max(gaps_mm) - 1e-9 <= option <= 0.15
+    closed = assemble(pieces, gap=option / MM_PER[unit], unit=unit)
+    assert len(closed.joins) == sum(g > 1e-9 for g in gaps_mm)
+
+
+def test_the_option_and_what_it_does_not_close() -> None:
+    """One gap of 0.05, which an option closes, and one of 0.4, which none does; then one beside too short a piece."""
+    pieces = lines(SQUARE)
+    pieces[0] = Line(0j, 9.95 + 0j, pieces[0].source)
+    pieces[2] = Line(10 + 10j, 0.4 + 10j, pieces[2].source)
+    message = str(refused(pieces))
+    assert (
+        "pass --join-gap 0.05mm; that is not enough, because the gap of 0.4 mm at (0.4, 10) cannot be joined" in message
+    )
+    assert message.count("--join-gap") == 1
+    pieces = lines([0j, 10 + 0j, 10 + 10j, 10j, 0.35j])
+    pieces[0] = Line(0j, 9.93 + 0j, pieces[0].source)
+    pieces[4] = Line(0.35j, 0.05j, pieces[4].source)
+    message = str(refused(pieces))
+    assert "pass --join-gap 0.07mm; that is not enough, because the gap of 0.05 mm at (0, " in message
+    error = refused(pieces, gap=0.07)
+    assert [f.code for f in error.findings] == ["gap-too-wide"]
+
+
+def test_no_option_where_a_third_end_is_as_near() -> None:
+    pieces = lines(SQUARE)
+    pieces[0] = Line(0j, 9.95 + 0j, pieces[0].source)
+    message = str(refused([*pieces, Line(10.04 + 0j, 20 + 0j, Source("LINE", "A", "0"))]))
+    assert "a third curve end lies about as near" in message
+    assert "pass --join-gap" not in message
+
+
+@pytest.mark.parametrize("bent", [False, True])
+def test_a_missing_end_of_a_thin_wall_is_no_gap(bent: bool) -> None:
+    """A foil of 100 × 0.1 without one of its ends: joined, its sides would meet and half of it be gone."""
+    if bent:
+        turn = math.pi / 2
+        pieces: list[Curve] = [
+            Arc.from_centre(0j, 60.0, 0.0, turn, Source("ARC", "1", "0")),
+            Line(60j, 59.9j, Source("LINE", "2", "0")),
+            Arc.from_centre(0j, 59.9, 0.0, turn, Source("ARC", "3", "0")),
+        ]
+    else:
+        pieces = lines([0.1j, 0j, 100 + 0j, 100 + 0.1j])
+        pieces = [pieces[0], pieces[1], pieces[3]]
+    for gap in (0.01, 0.1, 0.15):
+        error = refused(pieces, gap=gap)
+        assert error.findings[0].code == ("open-chain" if gap < 0.1 else "gap-too-wide")
+        assert "pass --join-gap" not in str(error)
+    assert "they run back along each other: an end is missing" in str(error)
+
+
+def test_the_gap_at_a_sharp_tip_is_joined() -> None:
+    """The tip of a wedge of 20°."""
+    tip = [0j, rect(50.0, math.radians(-10)), rect(50.0, math.radians(10))]
+    pieces = lines(tip)
+    pieces[2] = Line(tip[2], rect(0.008, math.radians(10)), pieces[2].source)
+    outline = assemble(pieces)
+    assert len(outline.joins) == 1
+    assert area(outline) == pytest.approx(0.5 * 50**2 * math.sin(math.radians(20)), rel=1e-3)
+
+
+def test_every_gap_that_is_too_wide_for_its_neighbour_is_named() -> None:
+    pieces = lines([0j, 10 + 0j, 10 + 10j, 0.05 + 10j, 10j, 0.05j])
+    pieces[3] = Line(0.05 + 10j, 0.008 + 10j, pieces[3].source)
+    pieces[5] = Line(0.05j, 0.008j, pieces[5].source)
+    assert [f.code for f in refused(pieces).findings] == ["gap-too-wide"] * 2
+
+
 def test_no_option_is_offered_that_would_be_refused() -> None:
     """A gap of 0.05 beside a piece of 0.3 would be wider than a tenth of it."""
     pieces = lines([0j, 10 + 0j, 10 + 10j, 10j, 0.35j])
@@ -300,3 +385,14 @@ def test_no_curve_that_encloses_anything() -> None:
     refused([Line(0, 1), Line(1, 2), Line(2, 0)])
     with pytest.raises(OutlineError, match="no curve"):
         assemble([])
+
+
+def test_a_void_among_open_curves_is_no_section() -> None:
+    """Four lines that miss each other by far around a closed square: the square may be their void."""
+    square = [0j, 10 + 0j, 10 + 10j, 10j]
+    closed = [Line(a, b) for a, b in zip(square, [*square[1:], square[0]], strict=True)]
+    sides = [Line(-8 - 10j, 18 - 10j), Line(20 - 8j, 20 + 18j), Line(18 + 20j, -8 + 20j), Line(-10 + 18j, -10 - 8j)]
+    with pytest.raises(OutlineError, match="may be a void of an outline whose ends do not meet"):
+        assemble([*closed, *sides])
+    # two of them on one side are strays and no more
+    assert len(assemble([*closed, *sides[:1]]).regions) == 1

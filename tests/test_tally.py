@@ -31,7 +31,8 @@ STRIP_ONLY = ("strip_thickness", "strip_width")
 def test_table_is_aligned_and_has_units() -> None:
     code, out, err = run("tally", BRACKET, "--layer", "OUTLINE", "--density", "aluminium")
     assert (code, err) == (0, "")
-    rows = [line for line in out.splitlines() if line.startswith("  ")][1:]
+    properties = out.partition("Dimensions on the drawing")[0]
+    rows = [line for line in properties.splitlines() if line.startswith("  ")][1:]
     assert len(rows) == len([key for key in KEYS if key not in STRIP_ONLY])
     points = {line.rindex(".") for line in rows if "." in line[48:]}
     assert len(points) == 1

@@ -8,14 +8,16 @@ from pathlib import Path
 
 from edgetally.composing import account_of, assemble_parts, compose, materials_of, read_parts
 from edgetally.curves import Packed
-from edgetally.doubts import hatch_findings, join_finding, size_finding, with_skips
+from edgetally.doubts import hatch_findings, join_finding, size_finding, with_skips, with_sound
 from edgetally.drawing.loading import load
 from edgetally.drawing.reading import DrawingFile, Reading, by_hatches
 from edgetally.errors import DrawingError, OutlineError, UsageError
 from edgetally.findings import Finding
+from edgetally.lettered.comparing import lettered_findings
 from edgetally.measuring import measure
+from edgetally.outline.apart import assemble_sound
 from edgetally.outline.assembly import assemble
-from edgetally.outline.choosing import choose
+from edgetally.outline.choosing import EACH, TOGETHER, choose, numbers_of
 from edgetally.outline.joining import DEFAULT_GAP_MM, WIDEST_GAP_MM, closes
 from edgetally.results import Analysis, DrawingRecord, OptionsFile, Wanted
 from edgetally.units import DENSITIES, MM_PER, length_factor, parse_length
@@ -102,18 +104,20 @@ def analyse(
         outline, chosen, hatched = assemble_parts(readings, drawn_gap, unit)
     else:
         try:
-            outline = assemble(reading.curves, gap=drawn_gap, unit=unit)
+            some = select not in (None, TOGETHER)
+            outline = (assemble_sound if some else assemble)(reading.curves, gap=drawn_gap, unit=unit)
         except OutlineError as error:
-            raise with_skips(error, reading) from None
+            raise with_skips(with_sound(error, reading, drawn_gap, unit, select), reading) from None
         hatched = hatch_findings(reading, outline, drawn_gap, unit)
-        several = len(outline.regions) > 1 and select not in ("each", "together")
-        chosen = choose(outline.regions, select, unit, drawing.labels() if several else ())
+        several = len(outline.regions) + len(outline.left_out) > 1 and select not in (EACH, TOGETHER)
+        chosen = choose(outline.regions, select, unit, drawing.labels() if several else (), outline.left_out)
+    numbers, _ = numbers_of(outline.regions, outline.left_out)
     findings += outline.findings
     findings += [join_finding(join, unit) for join in outline.joins]
     findings += hatched
     for number in outline.islands:
         x0, y0, _, _ = outline.regions[number].box
-        text = f"part {number + 1} lies inside a void of another part"
+        text = f"part {numbers[number]} lies inside a void of another part"
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
     wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None, neutral_axis=neutral_axis)
@@ -128,9 +132,20 @@ def analyse(
         findings.append(said)
     wholes = [composite.whole] if composite else [s.section for s in sections]
     findings += [f for f in (size_finding(whole, unit_source) for whole in wholes) if f is not None][:1]
+    if not materials:
+        findings += lettered_findings(drawing.lettering, outline, sections)
     file = name or drawing.name
     record = DrawingRecord(
-        file, drawing.sha256, drawing.dxf_version, unit, unit_source, scale, drawn_gap, reading, options_file
+        file,
+        drawing.sha256,
+        drawing.dxf_version,
+        unit,
+        unit_source,
+        scale,
+        drawn_gap,
+        reading,
+        options_file,
+        drawing.dimensions,
     )
     return Analysis(record, outline, tuple(sections), tuple(findings), out_unit, kg_per_m3, poisson, composite)
 

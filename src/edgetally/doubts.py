@@ -6,6 +6,7 @@ from edgetally.curves import Packed
 from edgetally.drawing.reading import Reading
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding, Severity
+from edgetally.outline.apart import assemble_sound
 from edgetally.outline.assembly import assemble
 from edgetally.outline.joining import DEFAULT_GAP_MM
 from edgetally.outline.records import Join, Outline, Region
@@ -15,6 +16,8 @@ from edgetally.units import MM_PER
 
 SMALLEST_MM, LARGEST_MM = 6.0, 5000.0
 """The larger side of nearly every section lies between these (common practice, no source)."""
+FEW = 40
+"""So many attempts are made to find what else is sound, where nobody asked for it."""
 SAME_AREA = 1e-3
 """A hatch fills what the outline encloses to this share: CAD programs store its arcs with fewer digits."""
 
@@ -65,6 +68,19 @@ def hatch_findings(reading: Reading, outline: Outline, gap: float, unit: str) ->
 def _middle(region: Region) -> complex:
     x0, y0, x1, y1 = region.box
     return complex(0.5 * (x0 + x1), 0.5 * (y0 + y1))
+
+
+def with_sound(error: OutlineError, reading: Reading, gap: float, unit: str, select: str | None) -> OutlineError:
+    """Add, where no choice was made, that other outlines on the layer are sound and could be chosen."""
+    if select is not None:
+        return error
+    try:
+        count = len(assemble_sound(reading.curves, gap=gap, unit=unit, attempts=FEW).regions)
+    except OutlineError:
+        return error
+    other = "1 other outline on the layer is" if count == 1 else f"{count} other outlines on the layer are"
+    message = f"{error}\n{other} sound: --each measures what is sound, --pick one of them"
+    return OutlineError(message, error.findings)
 
 
 def with_skips(error: OutlineError, reading: Reading) -> OutlineError:

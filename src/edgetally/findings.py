@@ -34,6 +34,8 @@ CODES: dict[str, str] = {
     "units-suspect": "the unit taken may not be the one meant",
     "not-to-scale": "the dimensions say that the drawing is not at full size",
     "dimension-overridden": "a dimension shows another number than it measures",
+    "lettered-agrees": "a value lettered on the drawing is that of the section",
+    "lettered-differs": "a value lettered on the drawing is not that of the section, or could not be compared",
     "layer-chosen": "the layer was chosen by the program, because only one carries a closed outline",
     "layer-missing": "there is no such layer, or nothing on it to read",
     "layer-hidden": "a layer is off or frozen, so nothing on it was read",

@@ -7,6 +7,7 @@ from functools import cached_property
 from math import degrees
 from typing import Any
 
+from edgetally.drawing.dimensions import DimensionRow
 from edgetally.drawing.reading import Reading
 from edgetally.findings import Finding, Severity, worst
 from edgetally.outline.records import Outline, Region
@@ -53,6 +54,7 @@ class DrawingRecord:
     join_gap: float
     reading: Reading
     options_file: OptionsFile | None = None
+    dimensions: tuple[DimensionRow, ...] = ()
 
 
 @dataclass(frozen=True, eq=False)

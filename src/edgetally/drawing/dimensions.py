@@ -38,7 +38,7 @@ _TOLERANCE = re.compile(r"(?:±|%%p|\+/-).*|[+-]\s*\d.*$", re.IGNORECASE)
 @dataclass(frozen=True, slots=True)
 class DimensionRow:
     """One dimension of a length: shown number with half a unit of its last digit, None where there is none; `measured`
-    from the definition points, in drawn lengths; `written` where a person wrote the number."""
+    from the definition points, in drawn lengths; `written` where a person wrote the number; DIMLFAC."""
 
     handle: str
     kind: str
@@ -48,6 +48,24 @@ class DimensionRow:
     half_digit: float
     measured: float
     written: bool
+    layer: str = ""
+    factor: float = 1.0
+
+    @property
+    def reading(self) -> float:
+        """What the dimension would show if nobody wrote over it: measured × DIMLFAC."""
+        return self.measured * self.factor
+
+    @property
+    def words(self) -> str:
+        """The text as shown, without formatting codes, the measurement in place of `<>`."""
+        text = (self.text or "<>").replace("<>", f"{self.reading:.6g}")
+        return " ".join(str(fast_plain_mtext(text)).split())
+
+    @property
+    def difference(self) -> float | None:
+        """The shown number less `reading`, None where no one number is shown."""
+        return None if self.shown is None else self.shown - self.reading
 
 
 def dimensions_of(document: Document, layers: Layers) -> list[DimensionRow]:
@@ -71,7 +89,8 @@ def dimensions_of(document: Document, layers: Layers) -> list[DimensionRow]:
         place = entity.dxf.get("text_midpoint") or entity.dxf.get("defpoint")
         at = complex(place[0], place[1]) if place is not None else 0j
         handle, kind = entity.dxf.handle or "", LENGTHS[entity.dimtype]
-        rows.append(DimensionRow(handle, kind, at, text, shown, half, measured, written))
+        layer = str(entity.dxf.layer)
+        rows.append(DimensionRow(handle, kind, at, text, shown, half, measured, written, layer, factor))
     return rows
 
 

@@ -89,7 +89,8 @@ def load(path: str | Path) -> Loaded:
             raise DrawingError(f"{path} is a folder; name a drawing in it")
         size = path.stat().st_size
         if size > MAX_BYTES:
-            message = f"{path} has {size / 2**20:.0f} MiB; files above {MAX_BYTES // 2**20} MiB are not read"
+            limit = f"files above {MAX_BYTES // 2**20} MiB are not read: save the section alone"
+            message = f"{path} has {size / 2**20:.0f} MiB; {limit}"
             raise DrawingError(message, [Finding("limit-reached", "error", message)])
         data = path.read_bytes()
     except FileNotFoundError:
@@ -125,7 +126,8 @@ def _refuse_other_kinds(path: Path, data: bytes) -> None:
     head = data[:64].lstrip(b"\xef\xbb\xbf \t\r\n")
     for magic, kind in _OTHER_KINDS.items():
         if head.startswith(magic):
-            raise DrawingError(f"{path} is not a DXF drawing but {kind}")
+            remedy = "" if ":" in kind else "; export the section as DXF"
+            raise DrawingError(f"{path} is not a DXF drawing but {kind}{remedy}")
     if b"\x00" in data[:1024] or b"SECTION" not in data:
         raise DrawingError(f"{path} is not a DXF drawing; export the section as DXF")
 

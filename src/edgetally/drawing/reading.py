@@ -5,16 +5,18 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
+from functools import cached_property
 
 from ezdxf.document import Drawing as Document
 
 from edgetally.curves import Curve, Source
 from edgetally.drawing.blocks import Blocks, Leaf
-from edgetally.drawing.dimensions import dimension_findings, dimensions_of
+from edgetally.drawing.dimensions import DimensionRow, dimension_findings, dimensions_of
 from edgetally.drawing.entities import ANNOTATION, UnreadError, curves_of, is_fitted, source_of
 from edgetally.drawing.hatches import boundary_of
 from edgetally.drawing.labels import labels_of
 from edgetally.drawing.layers import NEVER_PLOTTED, Layers
+from edgetally.drawing.lettering import Lettering, lettering_of
 from edgetally.drawing.limits import MAX_CURVES
 from edgetally.drawing.loading import Loaded
 from edgetally.errors import DrawingError
@@ -73,11 +75,21 @@ class DrawingFile:
 
     def labels(self) -> list[tuple[str, complex]]:
         """Return the short texts of model space with their places."""
-        return [(label.words, label.at) for label in labels_of(self.document, self.layers)]
+        return [(label.words, label.at) for label in labels_of(self.lettering)]
+
+    @cached_property
+    def lettering(self) -> list[Lettering]:
+        """The visible texts of model space."""
+        return lettering_of(self.document, self.layers)
 
     def dimension_findings(self, scale: float) -> list[Finding]:
         """Return what the dimensions of the drawing say against the scale taken."""
-        return dimension_findings(dimensions_of(self.document, self.layers), scale)
+        return dimension_findings(self.dimensions, scale)
+
+    @cached_property
+    def dimensions(self) -> tuple[DimensionRow, ...]:
+        """The visible dimensions of lengths in model space."""
+        return tuple(dimensions_of(self.document, self.layers))
 
     def header_unit(self) -> tuple[str | None, str]:
         """Return the unit that `$INSUNITS` names, None where no section is drawn in it, and the header's words."""
@@ -151,6 +163,11 @@ class DrawingFile:
         named = ", ".join(layers) or "any visible layer"
         keys = {name.casefold() for name in layers}
         message = f"nothing is drawn on {'layer ' if layers else ''}{named} in model space"
+        others = [name for name in self.visible_layers() if name.casefold() not in keys]
+        if layers and others:
+            message += (
+                f"; something is on {', '.join(others[:12])}{' …' if len(others) > 12 else ''}: name it with --layer"
+            )
         for layout in self.document.layouts:
             if layout.name != "Model":
                 count = sum(1 for e in layout if not layers or e.dxf.layer.casefold() in keys)
@@ -194,7 +211,7 @@ class _Account:
         if abs(height) > LEVEL:
             self._heights.setdefault(height, source_of(leaf))
         if len(self._curves) > MAX_CURVES:
-            message = f"the layer holds more than {MAX_CURVES} curves, which are not read"
+            message = f"the layer holds more than {MAX_CURVES} curves, which are not read: export the section alone"
             raise DrawingError(message, [Finding("limit-reached", "error", message)])
 
     def _curves_of(self, leaf: Leaf) -> list[Curve]:

@@ -10,7 +10,7 @@ import numpy as np
 from edgetally.curves.intersections import nearest
 from edgetally.errors import OutlineError, UsageError
 from edgetally.findings import Finding
-from edgetally.outline.records import Region
+from edgetally.outline.records import LeftOut, Region
 from edgetally.outline.words import place
 
 EACH = "each"
@@ -21,22 +21,27 @@ _POINT = re.compile(r"\s*([-+]?[\d.]+(?:[eE][-+]?\d+)?)\s*,\s*([-+]?[\d.]+(?:[eE
 
 
 def choose(
-    regions: Sequence[Region], selection: str | None, unit: str, labels: Sequence[tuple[str, complex]] = ()
+    regions: Sequence[Region],
+    selection: str | None,
+    unit: str,
+    labels: Sequence[tuple[str, complex]] = (),
+    left_out: Sequence[LeftOut] = (),
 ) -> list[tuple[str, tuple[Region, ...]]]:
-    """Return named groups of regions, each one section. Regions are numbered from 1 in the order given.
+    """Return named groups of regions, each one section, numbered as `numbers_of` says.
 
     `selection` is None (there must be one region), `each`, `together`, or what `--pick` was given: a number, a name
     (one of the `labels`, text and place, that lies inside) or a point `X,Y` in or nearest to the one meant. Raises
-    OutlineError (`several-outlines`) listing the regions where a choice is needed, UsageError for a pick that names
-    none.
+    OutlineError (`several-outlines`) listing the regions where a choice is needed, or with its fault where one of
+    `left_out` is picked; UsageError for a pick that names none.
     """
+    numbers, _ = numbers_of(regions, left_out)
     if selection == EACH:
-        return [(str(k + 1), (region,)) for k, region in enumerate(regions)]
+        return [(str(numbers[k]), (region,)) for k, region in enumerate(regions)]
     if selection == TOGETHER:
         return [("1" if len(regions) == 1 else "together", tuple(regions))]
     if selection is not None:
-        k = _picked(regions, selection, unit, labels)
-        return [(str(k + 1), (regions[k],))]
+        k = _picked(regions, selection, unit, labels, left_out)
+        return [(str(numbers[k]), (regions[k],))]
     if len(regions) == 1:
         return [("1", tuple(regions))]
     message = "\n".join([
@@ -49,26 +54,49 @@ def choose(
     raise OutlineError(message, [Finding("several-outlines", "error", message, (x0, y0))])
 
 
+def numbers_of(regions: Sequence[Region], left_out: Sequence[LeftOut] = ()) -> tuple[list[int], list[int]]:
+    """Number regions and what was left out together, from 1, by their left, then lower, edge: so a number means the
+    same outline when the faulty ones are mended."""
+    if not left_out:
+        return list(range(1, len(regions) + 1)), []
+    boxes = [*(region.box for region in regions), *(each.box for each in left_out)]
+    order = sorted(range(len(boxes)), key=lambda k: boxes[k][:2])
+    number = {k: n + 1 for n, k in enumerate(order)}
+    numbers = [number[k] for k in range(len(boxes))]
+    return numbers[: len(regions)], numbers[len(regions) :]
+
+
 def names_of(regions: Sequence[Region], labels: Sequence[tuple[str, complex]]) -> list[list[str]]:
     """Return for each region the texts that it is the innermost one around."""
-    innermost: dict[int, int] = {}
+    around = innermost_around(regions, [p for _, p in labels])
+    return [[words for (words, _), k in zip(labels, around, strict=True) if k == n] for n in range(len(regions))]
+
+
+def innermost_around(regions: Sequence[Region], points: Sequence[complex]) -> list[int | None]:
+    """Return for each point the region whose outer boundary is the innermost one around it, None where none is."""
+    innermost: list[int | None] = [None] * len(points)
     for k in sorted(range(len(regions)), key=lambda k: -regions[k].outer.area):
         x0, y0, x1, y1 = regions[k].box
-        near = [n for n, (_, p) in enumerate(labels) if x0 <= p.real <= x1 and y0 <= p.imag <= y1]
+        near = [n for n, p in enumerate(points) if x0 <= p.real <= x1 and y0 <= p.imag <= y1]
         if near:
-            turns = regions[k].outer.packed.turning(np.array([labels[n][1] for n in near]))
-            innermost |= {n: k for n, turn in zip(near, turns, strict=True) if abs(turn) > np.pi}
-    return [[words for n, (words, _) in enumerate(labels) if innermost.get(n) == k] for k in range(len(regions))]
+            turns = regions[k].outer.packed.turning(np.array([points[n] for n in near]))
+            for n, turn in zip(near, turns.tolist(), strict=True):
+                if abs(turn) > np.pi:
+                    innermost[n] = k
+    return innermost
 
 
-def describe(regions: Sequence[Region], unit: str, names: Sequence[Sequence[str]] = ()) -> list[str]:
+def describe(
+    regions: Sequence[Region], unit: str, names: Sequence[Sequence[str]] = (), numbers: Sequence[int] | None = None
+) -> list[str]:
     """Return one line a region: number, place, size, area, voids, names; in the drawing's unit."""
     lines = []
+    numbers = numbers or range(1, len(regions) + 1)
     for k, region in enumerate(regions[:LISTED]):
         x0, y0, x1, y1 = region.box
         voids = f", {len(region.voids)} void{'s' if len(region.voids) > 1 else ''}" if region.voids else ""
         lines.append(
-            f"  {k + 1}: lower left at {place(complex(x0, y0))}, {x1 - x0:.6g} x {y1 - y0:.6g} {unit}, "
+            f"  {numbers[k]}: lower left at {place(complex(x0, y0))}, {x1 - x0:.6g} x {y1 - y0:.6g} {unit}, "
             f"area {region.area:.6g} {unit}^2{voids}{_named(names[k]) if names else ''}"
         )
     if len(regions) > LISTED:
@@ -80,23 +108,35 @@ def _named(names: Sequence[str]) -> str:
     return f", named {', '.join(map(repr, names[:3]))}" if names else ""
 
 
-def _picked(regions: Sequence[Region], pick: str, unit: str, labels: Sequence[tuple[str, complex]]) -> int:
+def _picked(
+    regions: Sequence[Region],
+    pick: str,
+    unit: str,
+    labels: Sequence[tuple[str, complex]],
+    left_out: Sequence[LeftOut],
+) -> int:
+    numbers, numbers_out = numbers_of(regions, left_out)
     if pick.strip().isdigit():
         number = int(pick)
-        if not 1 <= number <= len(regions):
-            raise UsageError(f"--pick {number}: the drawing holds the outer boundaries 1 to {len(regions)}")
-        return number - 1
+        if number in numbers_out:
+            raise _refused(pick, left_out[numbers_out.index(number)])
+        if number not in numbers:
+            total = len(regions) + len(left_out)
+            raise UsageError(f"--pick {number}: the drawing holds the outer boundaries 1 to {total}")
+        return numbers.index(number)
     names = names_of(regions, labels)
-    called = [k for k, texts in enumerate(names) if pick.strip().casefold() in (t.casefold() for t in texts)]
-    if len(called) == 1:
-        return called[0]
+    wanted = pick.strip().casefold()
+    called = [k for k, texts in enumerate(names) if wanted in (t.casefold() for t in texts)]
+    faulty = [each for each in left_out if any(words.casefold() == wanted and _within(each, p) for words, p in labels)]
+    if (count := len(called) + len(faulty)) > 1:
+        raise UsageError(f"--pick {pick!r} names {count} outer boundaries: give the number or a point X,Y instead")
     if called:
-        raise UsageError(
-            f"--pick {pick!r} names {len(called)} outer boundaries: give the number or a point X,Y instead"
-        )
+        return called[0]
+    if faulty:
+        raise _refused(pick, faulty[0])
     match = _POINT.fullmatch(pick)
     if match is None:
-        listed = "\n".join(describe(regions, unit, names))
+        listed = "\n".join(describe(regions, unit, names, numbers))
         raise UsageError(
             f"--pick {pick!r} is neither a number, nor a text inside one, nor a point X,Y; the outer boundaries are:\n"
             f"{listed}"
@@ -108,7 +148,22 @@ def _picked(regions: Sequence[Region], pick: str, unit: str, labels: Sequence[tu
     inside = [k for k, region in enumerate(regions) if _contains(region, p)]
     if inside:
         return inside[0]
-    return min(range(len(regions)), key=lambda k: min(nearest(c, p)[0] for c in regions[k].outer.curves))
+    away = [min(nearest(c, p)[0] for c in region.outer.curves) for region in regions]
+    for each in left_out:
+        if _within(each, p) or min(nearest(c, p)[0] for c in each.curves) <= min(away):
+            raise _refused(pick, each)
+    return min(range(len(regions)), key=away.__getitem__)
+
+
+def _refused(pick: str, left: LeftOut) -> OutlineError:
+    finding = left.finding
+    message = f"--pick {pick}: {finding.message}"
+    return OutlineError(message, [Finding(finding.code, "error", message, finding.at, finding.handles)])
+
+
+def _within(left: LeftOut, p: complex) -> bool:
+    x0, y0, x1, y1 = left.box
+    return x0 <= p.real <= x1 and y0 <= p.imag <= y1
 
 
 def _contains(region: Region, p: complex) -> bool:

@@ -13,23 +13,18 @@ from edgetally.curves.green import EPS
 from edgetally.errors import OutlineError
 from edgetally.findings import Finding
 from edgetally.outline.candidates import Indices
+from edgetally.outline.gaps import DEFAULT_GAP_MM as DEFAULT_GAP_MM
+from edgetally.outline.gaps import REPORTED, refusal, refuse_open, refuse_wide
+from edgetally.outline.gaps import WIDEST_GAP_MM as WIDEST_GAP_MM
 from edgetally.outline.pairing import SLENDER, Ends, pair
 from edgetally.outline.records import Join, Loop
-from edgetally.outline.words import at, enough_mm, handles, length_text, place
+from edgetally.outline.words import at, handles, length_text, place
 from edgetally.units import MM_PER
 
-DEFAULT_GAP_MM = 0.01
-"""Joined without asking: below what a shop can see or a tolerance can name (common practice, no source)."""
-WIDEST_GAP_MM = 0.15
-"""Never joined, whatever is asked: ends that far apart are drawn apart."""
-NEIGHBOUR_SHARE = 0.1
-"""A join may not be wider than this share of the shorter of the two curves: it would be an edge of its own."""
 ROUNDING = 64 * EPS
 """Ends nearer than this times the largest coordinate differ by the rounding of their own computation."""
 STRAIGHT = 1.2
 """A stray curve is no longer than this times its chord: what is bent more may be meant as a boundary."""
-REPORTED = 12
-"""So many places are listed in a refusal; the rest is counted."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -56,15 +51,18 @@ def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
     if pairing.meeting:
         raise _branch(ends, pairing.meeting, "at one point")
     if pairing.crowded:
-        raise _branch(ends, pairing.crowded, f"within the join gap of {length_text(gap, unit)}")
+        wide = gap * MM_PER[unit] > DEFAULT_GAP_MM * (1 + 1e-9)
+        how = f"within the join gap of {length_text(gap, unit)}"
+        raise _branch(ends, pairing.crowded, how, ", or pass a smaller --join-gap" if wide else "")
     partner = pairing.partner
     strays = _strays(ends, partner, WIDEST_GAP_MM / MM_PER[unit])
     if len(strays) == len(ends.curves) and not loops:
         strays = []
-    _refuse_open(ends, partner, set(strays), gap, unit)
+    refuse_open(ends, partner, strays, gap, unit)
+    refuse_wide(ends, partner, unit)
     joins: list[Join] = []
     for chain in _walk(partner, strays):
-        loop, joined = _weld(ends, chain, unit)
+        loop, joined = _weld(ends, chain)
         loops.append(loop)
         joins.extend(joined)
     return Closed(loops, joins, [ends.curves[k] for k in strays])
@@ -73,8 +71,7 @@ def close_loops(curves: Sequence[Curve], gap: float, unit: str) -> Closed:
 def _strays(ends: Ends, partner: Indices, clear: float) -> list[int]:
     """Return the curves that no outline can miss: both ends meet nothing within `clear`, and little is enclosed."""
     alone = np.flatnonzero((partner[0::2] < 0) & (partner[1::2] < 0))
-    chords = np.abs(ends.z[1::2] - ends.z[0::2])
-    candidates = [k for k in map(int, alone) if ends.curves[k].length <= STRAIGHT * chords[k]]
+    candidates = [k for k in map(int, alone) if is_nearly_straight(ends.curves[k])]
     if not candidates:
         return []
     tree = shapely.STRtree(shapely.points(ends.z.real, ends.z.imag))
@@ -82,6 +79,11 @@ def _strays(ends: Ends, partner: Indices, clear: float) -> list[int]:
     here, there = tree.query(shapely.points(ends.z[at].real, ends.z[at].imag), predicate="dwithin", distance=clear)
     crowded = {int(at[i]) // 2 for i, j in zip(here, there, strict=True) if at[i] // 2 != j // 2}
     return [k for k in candidates if k not in crowded]
+
+
+def is_nearly_straight(curve: Curve) -> bool:
+    """Tell whether a curve alone cannot be meant as a boundary."""
+    return curve.length <= STRAIGHT * abs(curve.end - curve.start)
 
 
 def closes(curves: Sequence[Curve], gap: float) -> bool:
@@ -120,60 +122,18 @@ def _sort(curves: Sequence[Curve]) -> tuple[list[Loop], Ends]:
     return loops, Ends(pieces, np.array([p for c in pieces for p in (c.start, c.end)], dtype=complex), rounding)
 
 
-def _branch(ends: Ends, groups: list[list[int]], how: str) -> OutlineError:
+def _branch(ends: Ends, groups: list[list[int]], how: str, also: str = "") -> OutlineError:
     findings = []
     for group in groups[:REPORTED]:
         z = complex(ends.z[group[0]])
         names = ", ".join(ends.name(e) for e in group[:6]) + (" …" if len(group) > 6 else "")
         message = (
             f"{len(group)} curve ends meet {how} at {place(z)}: {names}; an outline has two ends at each point: "
-            "remove inner lines and doubled curves, or move them to another layer"
+            f"remove inner lines and doubled curves, or move them to another layer{also}"
         )
         sources = [ends.curves[e // 2].source for e in group]
         findings.append(Finding("branch", "error", message, at(z), handles(sources)))
-    return _refusal(findings, len(groups))
-
-
-def _refuse_open(ends: Ends, partner: Indices, strays: set[int], gap: float, unit: str) -> None:
-    free = np.array([e for e in np.flatnonzero(partner < 0) if int(e) // 2 not in strays], dtype=np.intp)
-    if not free.size:
-        return
-    points = shapely.points(ends.z[free].real, ends.z[free].imag)
-    findings = []
-    near: dict[int, tuple[int, float]] = {}
-    if len(free) > 1:
-        pairs, distance = shapely.STRtree(points).query_nearest(points, exclusive=True, return_distance=True)
-        for (i, j), d in zip(pairs.T, distance, strict=True):
-            near.setdefault(int(i), (int(j), float(d)))
-    done: set[frozenset[int]] = set()
-    for k, end in enumerate(free):
-        z, (j, d) = complex(ends.z[end]), near.get(k, (k, 0.0))
-        pair = frozenset((k, j))
-        if pair in done or (j != k and near.get(j, (k, 0))[0] != k and len(free) > 2):
-            continue
-        done.add(pair)
-        mine, yours = ends.curves[int(end) // 2], ends.curves[int(free[j]) // 2]
-        a, b = mine.source, yours.source
-        joined = f"joined up to {length_text(gap, unit)}"
-        if j == k or (mine is yours and mine.length <= SLENDER * d):
-            message = f"outline is open: {a} from {place(mine.start)} to {place(mine.end)} meets nothing at its ends"
-            remedy = "close it in the drawing, or move it to another layer"
-        else:
-            message = f"outline is open: gap {length_text(d, unit)} at {place(z)} between {a} and {b}, {joined}"
-            remedy = "close it in the drawing"
-            if d * MM_PER[unit] <= WIDEST_GAP_MM and d <= NEIGHBOUR_SHARE * min(mine.length, yours.length):
-                remedy += f" or pass --join-gap {enough_mm(d, unit)}"
-        findings.append(Finding("open-chain", "error", f"{message}; {remedy}", at(z), handles((a, b))))
-        if len(findings) == REPORTED:
-            break
-    raise _refusal(findings, (len(free) + 1) // 2)
-
-
-def _refusal(findings: list[Finding], count: int) -> OutlineError:
-    lines = [f.message for f in findings]
-    if count > len(lines):
-        lines.append(f"and {count - len(lines)} more such places")
-    return OutlineError("\n".join(lines), findings)
+    return refusal(findings, len(groups))
 
 
 def _walk(partner: Indices, strays: Sequence[int]) -> list[list[int]]:
@@ -192,7 +152,7 @@ def _walk(partner: Indices, strays: Sequence[int]) -> list[list[int]]:
     return chains
 
 
-def _weld(ends: Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
+def _weld(ends: Ends, chain: list[int]) -> tuple[Loop, list[Join]]:
     """Make the loop: every curve turned along the chain, and the ends at a gap brought to one point."""
     curves = [ends.curves[e // 2] if e % 2 == 0 else ends.curves[e // 2].reversed() for e in chain]
     joins: list[Join] = []
@@ -204,14 +164,6 @@ def _weld(ends: Ends, chain: list[int], unit: str) -> tuple[Loop, list[Join]]:
         if g <= ends.rounding:
             continue
         a, b = curves[k], curves[n]
-        shorter = min(a.length, b.length)
-        if g > NEIGHBOUR_SHARE * shorter:
-            z = stops[k]
-            message = (
-                f"the gap of {length_text(g, unit)} at {place(z)} between {a.source} and {b.source} is wider than a "
-                f"tenth of the shorter of them ({length_text(shorter, unit)}); close it in the drawing"
-            )
-            raise _refusal([Finding("gap-too-wide", "error", message, at(z), handles((a.source, b.source)))], 1)
         joins.append(Join(g, 0.5 * (a.end + b.start), (a.source, b.source), _swept(a, g) + _swept(b, g)))
         stops[k], starts[n] = _meeting_point(a, b, ends.rounding)
     welded: list[Curve] = []

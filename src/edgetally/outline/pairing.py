@@ -54,20 +54,15 @@ def pair(ends: Ends, gap: float) -> Pairing:
     _pair_off(partner, meeting)
     # an option of 0.05mm is to close the gap of 0.05 that it was given for, whatever the last digit
     reach = gap * (1.0 + GENEROUS) + ends.rounding
-    crowded = _packs(ends, np.flatnonzero(partner < 0), reach)
+    crowded = packs(ends, np.flatnonzero(partner < 0), reach)
     _pair_off(partner, crowded)
 
     free = np.flatnonzero(partner < 0)
     if not free.size:
         return Pairing(partner, meeting, crowded)
-    points = shapely.points(ends.z.real, ends.z.imag)
-    one, other = shapely.STRtree(points[free]).query(points[free], predicate="dwithin", distance=reach)
-    one, other, distance = _others(ends, free[one], free[other])
-    for k in np.lexsort((other, one, distance)).tolist():
-        i, j = one[k], other[k]
-        if partner[i] < 0 and partner[j] < 0:
-            partner[i], partner[j] = j, i
+    nearest_first(ends, free, reach, partner)
 
+    points = shapely.points(ends.z.real, ends.z.imag)
     free = np.flatnonzero(partner < 0)
     if free.size:
         odd, near = shapely.STRtree(points).query(points[free], predicate="dwithin", distance=reach)
@@ -76,6 +71,17 @@ def pair(ends: Ends, gap: float) -> Pairing:
         threes = np.sort(np.column_stack([odd[taken], near[taken], partner[near[taken]]]), axis=1)
         crowded += np.unique(threes, axis=0).tolist()
     return Pairing(partner, meeting, crowded)
+
+
+def nearest_first(ends: Ends, free: Indices, reach: float, partner: Indices) -> None:
+    """Enter into `partner` the pairs of `free` ends up to `reach` apart, nearest first and one to one."""
+    points = shapely.points(ends.z[free].real, ends.z[free].imag)
+    one, other = shapely.STRtree(points).query(points, predicate="dwithin", distance=reach)
+    one, other, distance = _others(ends, free[one], free[other])
+    for k in np.lexsort((other, one, distance)).tolist():
+        i, j = one[k], other[k]
+        if partner[i] < 0 and partner[j] < 0:
+            partner[i], partner[j] = j, i
 
 
 def _others(ends: Ends, one: Indices, other: Indices) -> tuple[Indices, Indices, NDArray[np.float64]]:
@@ -95,7 +101,7 @@ def _at_points(ends: Ends) -> tuple[Indices, list[list[int]]]:
     points = shapely.points(spots.real, spots.imag)
     one, other = shapely.STRtree(points).query(points, predicate="dwithin", distance=ends.rounding)
     keep = one < other
-    group = _linked(one[keep], other[keep], len(spots))[spot]
+    group = linked(one[keep], other[keep], len(spots))[spot]
     order = np.argsort(group, kind="stable")
     first = np.flatnonzero(np.diff(group[order], prepend=-1))
     count = np.diff(first, append=len(order))
@@ -104,7 +110,7 @@ def _at_points(ends: Ends) -> tuple[Indices, list[list[int]]]:
     return np.column_stack([order[pairs], order[pairs + 1]]), sorted(crowds)
 
 
-def _linked(one: Indices, other: Indices, count: int) -> Indices:
+def linked(one: Indices, other: Indices, count: int) -> Indices:
     """Number the groups of 0 … count − 1 that the links (one, other) make: each by the least of its members."""
     group = np.arange(count)
     while True:
@@ -117,7 +123,7 @@ def _linked(one: Indices, other: Indices, count: int) -> Indices:
             return group
 
 
-def _packs(ends: Ends, free: Indices, reach: float) -> list[list[int]]:
+def packs(ends: Ends, free: Indices, reach: float) -> list[list[int]]:
     """Return the groups of free ends that are so many in one square of the size of the gap that pairs make no sense."""
     if len(free) <= PACK:
         return []

@@ -74,6 +74,15 @@ class Region:
 
 
 @dataclass(frozen=True, eq=False)
+class LeftOut:
+    """Curves of a faulty outline, or of one that a faulty one concerns, with their box and the reason."""
+
+    curves: tuple[Curve, ...]
+    box: tuple[float, float, float, float]
+    finding: Finding
+
+
+@dataclass(frozen=True, eq=False)
 class Outline:
     """What was assembled from a set of curves: regions numbered from the left, and how they came to be closed."""
 
@@ -83,3 +92,5 @@ class Outline:
     """Indices of the regions that lie inside a void of another."""
     findings: tuple[Finding, ...] = ()
     """What was removed on the way, beside the joins."""
+    left_out: tuple[LeftOut, ...] = ()
+    """What could not be measured, where only some of several outlines are asked for."""

@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterable
 from math import ceil, floor, log10
 
-from edgetally.curves import Source
+from edgetally.curves import Curve, Source
+from edgetally.findings import Finding
 from edgetally.units import MM_PER
 
 
@@ -34,3 +35,12 @@ def enough_mm(value: float, unit: str) -> str:
     mm = value * MM_PER[unit]
     step = 10.0 ** (floor(log10(mm)) - 1)
     return f"{ceil(mm / step * (1 - 1e-12)) * step:.6g}mm"
+
+
+def stray_finding(curve: Curve) -> Finding:
+    """Say that a single curve has nothing to do with any outline."""
+    message = (
+        f"{curve.source} from {place(curve.start)} to {place(curve.end)} belongs to no outline and was left out; move "
+        "it to another layer"
+    )
+    return Finding("stray-curve", "warning", message, at(curve.start), handles((curve.source,)))

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 from edgetally import __version__
 from edgetally.output.composite_words import composite_document
+from edgetally.output.dimension_table import dimension_rows
 from edgetally.output.section_blocks import section_document
 
 if TYPE_CHECKING:
@@ -43,6 +44,7 @@ def document(analysis: Analysis) -> dict[str, Any]:
                 ],
                 "on_other_layers": reading.elsewhere,
             },
+            "dimensions": dimension_rows(analysis),
         },
         "sections": [_section(section) for section in analysis.sections],
         "findings": [finding.to_dict() for finding in analysis.findings],

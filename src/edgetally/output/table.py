@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 from edgetally.findings import RANK, Finding
 from edgetally.output.blocks import block_lines, whole_part
 from edgetally.output.composite_words import composite_blocks, composite_cells, composite_columns
+from edgetally.output.dimension_table import dimension_block
 from edgetally.output.numbers import value_text
 from edgetally.output.section_blocks import section_blocks
 from edgetally.output.symbols import KEYS, SymbolSet, symbol_of
@@ -43,6 +44,9 @@ def analysis_text(analysis: Analysis, symbols: SymbolSet = "plain", *, short: bo
     if analysis.composite is not None:
         blocks = composite_blocks(analysis.composite, symbols)
         lines += [line for block in (blocks[:1] if short else blocks) for line in ("", *block_lines(block))]
+    dimensions = None if short else dimension_block(analysis)
+    if dimensions is not None:
+        lines += ["", *block_lines(dimensions)]
     findings = finding_lines(analysis.all_findings, analysis)
     if findings:
         lines += ["", "findings", *findings]
