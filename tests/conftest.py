@@ -7,6 +7,9 @@ from __future__ import annotations
 
 import os
 
+# as the command line does, before numpy is loaded: the matrices of one section are too small for several threads
+os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
+
 from hypothesis import settings
 
 settings.register_profile("same", derandomize=True, deadline=None, print_blob=True)

@@ -37,6 +37,7 @@ def analyse(
     material: str | Sequence[str] = (),
     torsion: bool = True,
     neutral_axis: float | None = None,
+    offset: str | None = None,
     name: str | None = None,
     options_file: OptionsFile | None = None,
     progress: Callable[[str], None] | None = None,
@@ -58,6 +59,7 @@ def analyse(
         `STEEL=210GPa,7850`; the sections are then the parts alone, and torsion and shear are not solved.
     torsion : solve torsion and shear too; without it their keys are left out, and the rest takes milliseconds.
     neutral_axis : K of the bend allowances of a cold-formed strip, 0 to 0.5; that of DIN 6935 without it.
+    offset : a distance with its unit by which every surface is moved, both ways: the band of each property.
     name : the name that the result gives for the file, where `path` is a copy of it.
     options_file : where some of these were taken from, for the record.
     progress : called with the name of each stage as it begins.
@@ -79,6 +81,9 @@ def analyse(
             f"a join gap of {join_gap} is more than {WIDEST_GAP_MM} mm: ends that far apart are not joined; close the "
             "outline in the drawing"
         )
+    moving = parse_length(offset, signed=True) if offset is not None else None
+    if moving is not None and moving[0] == 0.0:
+        raise UsageError(f"an offset of {offset} moves nothing: give a length, as 0.2mm")
     kg_per_m3 = _density(density)
     materials = materials_of(material, _density, layer=layer, select=select, density=density)
     say = progress or (lambda stage: None)
@@ -120,7 +125,12 @@ def analyse(
         text = f"part {numbers[number]} lies inside a void of another part"
         findings.append(Finding("island-in-void", "note", text, (x0, y0)))
     out_unit = out_units or unit
-    wanted = Wanted(density=kg_per_m3, poisson=poisson if torsion else None, neutral_axis=neutral_axis)
+    wanted = Wanted(
+        density=kg_per_m3,
+        poisson=poisson if torsion else None,
+        neutral_axis=neutral_axis,
+        offset=None if moving is None else moving[0] * length_factor(moving[1], unit),
+    )
     each_wanted = [Wanted(density=m.density, poisson=None) for m in materials] or [wanted] * len(chosen)
     sections = []
     for number, ((section_name, regions), own) in enumerate(zip(chosen, each_wanted, strict=True), start=1):

@@ -50,6 +50,7 @@ CODES: dict[str, str] = {
     "limit-reached": "a limit that protects the program was reached",
     "axes-arbitrary": "the principal moments are equal, so every axis is principal",
     "torsion-unsolved": "torsion and shear could not be computed",
+    "offset-impossible": "surfaces that move by the offset asked for meet, or eat a piece of the outline",
     "parts-disconnected": "the parts of the section do not touch",
 }
 

@@ -16,6 +16,7 @@ from edgetally.section.area import AreaResult
 from edgetally.section.composite import CompositeResult
 from edgetally.section.connected import ConnectedResult
 from edgetally.section.developed import Developed
+from edgetally.section.offsets import OffsetBand
 from edgetally.section.record import Property, Section
 from edgetally.units import length_factor
 
@@ -25,12 +26,14 @@ class Wanted:
     """What is asked of a section beyond its outline.
 
     `density` [kg/m³] adds the mass per length; `poisson` is for the shear areas, None for no torsion and shear at all;
-    `neutral_axis` is K of the bend allowances, None for that of DIN 6935.
+    `neutral_axis` is K of the bend allowances, None for that of DIN 6935; `offset` the distance [real length in the
+    drawing's unit] by which every surface moves.
     """
 
     density: float | None = None
     poisson: float | None = 0.3
     neutral_axis: float | None = None
+    offset: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -70,6 +73,8 @@ class SectionResult:
     out_unit: str
     developed: Developed | None = None
     """The strip or tube that the section is, unrolled; None for any other."""
+    offset: OffsetBand | None = None
+    """What moving every surface does, where that was asked for."""
 
     @property
     def name(self) -> str:

@@ -79,8 +79,8 @@ _STRESS = re.compile(r"\s*([-+]?[0-9]*[.]?[0-9]+(?:[eE][-+]?[0-9]+)?)\s*([A-Za-z
 _LENGTH = re.compile(r"\s*([-+]?[0-9]*[.]?[0-9]+(?:[eE][-+]?[0-9]+)?)\s*([A-Za-z]*)\s*")
 
 
-def parse_length(text: str) -> tuple[float, str]:
-    """Read a length written with its unit, as `0.05mm`, into (value, unit).
+def parse_length(text: str, *, signed: bool = False) -> tuple[float, str]:
+    """Read a length written with its unit, as `0.05mm`, into (value, unit); below 0 only where it may be `signed`.
 
     Raises UsageError where the number or the unit is missing or unknown, or the value is not finite.
     """
@@ -88,8 +88,8 @@ def parse_length(text: str) -> tuple[float, str]:
     if match is None or match.group(2) not in MM_PER:
         raise UsageError(f"length {text!r} is not understood: write a number and its unit, as 0.05mm or 0.002in")
     value = float(match.group(1))
-    if not math.isfinite(value) or value < 0:
-        raise UsageError(f"length {text!r} must be finite and not negative")
+    if not math.isfinite(value) or (value < 0 and not signed):
+        raise UsageError(f"length {text!r} must be finite{'' if signed else ' and not negative'}")
     return value, match.group(2)
 
 

@@ -65,6 +65,11 @@ _READING = [
     ),
     click.option("--poisson", type=float, default=0.3, show_default=True, help="Poisson's ratio, for the shear areas."),
     click.option(
+        "--offset",
+        metavar="LENGTH",
+        help="Every surface moved outward and inward by so much, with its unit, as 0.2mm: the band of each property.",
+    ),
+    click.option(
         "--neutral-axis",
         type=float,
         metavar="K",
@@ -136,6 +141,7 @@ def settings_of(options: dict[str, Any]) -> dict[str, Any]:
         "density": options["density"],
         "poisson": options["poisson"],
         "neutral_axis": options["neutral_axis"],
+        "offset": options["offset"],
         "material": list(options.get("material", ())),
     }
 

@@ -31,6 +31,21 @@ def dimension_rows(analysis: Analysis) -> list[dict[str, Any]]:
     ]
 
 
+def lying(analysis: Analysis) -> bool:
+    """Tell whether a finding doubts the dimensions."""
+    return any(f.code in ("dimension-overridden", "not-to-scale", "units-suspect") for f in analysis.findings)
+
+
+def dimension_evidence(analysis: Analysis) -> str:
+    """Return in words how many dimensions there are and how they agree; empty where there are none."""
+    rows = analysis.drawing.dimensions
+    if not rows:
+        return ""
+    off = sum(1 for row in rows if row.difference is not None and abs(row.difference) > row.half_digit)
+    agreement = f"{off} show another number than they measure" if off else "all show what they measure"
+    return f"{len(rows)} on the drawing, {agreement}"
+
+
 def dimension_block(analysis: Analysis) -> Block | None:
     """Return the table of the dimensions on the drawing, None where it has none."""
     rows = list(analysis.drawing.dimensions)

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from edgetally.output.blocks import Block
+from edgetally.output.offset_words import offset_block, offset_document
 from edgetally.output.strip_words import strip_blocks, strip_document
 from edgetally.output.symbols import SymbolSet
 
@@ -17,6 +18,9 @@ def section_blocks(section: SectionResult, symbols: SymbolSet) -> list[Block]:
     blocks: list[Block] = []
     if section.developed is not None and section.developed.bends:
         blocks += strip_blocks(section)
+    band = offset_block(section, symbols)
+    if band is not None:
+        blocks.append(band)
     return blocks
 
 
@@ -25,4 +29,6 @@ def section_document(section: SectionResult) -> dict[str, Any]:
     keys: dict[str, Any] = {}
     if section.developed is not None:
         keys["strip"] = strip_document(section, section.developed)
+    if section.offset is not None:
+        keys["offset"] = offset_document(section, section.offset)
     return keys

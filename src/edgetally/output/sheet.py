@@ -8,7 +8,9 @@ from typing import TYPE_CHECKING
 
 from edgetally.errors import UsageError
 from edgetally.output.blocks import Block
+from edgetally.output.dimension_table import dimension_block, lying
 from edgetally.output.main_page import MainPage
+from edgetally.output.offset_words import offset_block
 from edgetally.output.pages import LEADING, Head, Pages, Setup, whole_pdf
 from edgetally.output.pens import Picture
 from edgetally.output.strip_picture import strip_picture
@@ -107,6 +109,12 @@ def _write_section(
     if first:
         elsewhere = frozenset(key for matter in matters for key in matter.keys)
         MainPage(paper, analysis, section, symbols, elsewhere).write(name, where)
+        dimensions = dimension_block(analysis)
+        if dimensions is not None and lying(analysis) and section is analysis.sections[0]:
+            set_blocks(paper, [dimensions], paper.open("Dimensions on the drawing", where=where, level=1) - 6.0)
+    band = offset_block(section, symbols)
+    if first and band is not None:
+        set_blocks(paper, [band], paper.open("Tolerance", where=where, level=1) - 6.0)
     for matter in matters:
         # a bookmark below that of the first page, or one that names the section itself
         bookmark = matter.title if first or len(analysis.sections) == 1 else f"{name}: {matter.title}"

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from edgetally.outline.words import length_text, place
+from edgetally.output.dimension_table import dimension_evidence
 from edgetally.output.numbers import mantissa_and_power, number_text
 from edgetally.output.symbols import SymbolSet, name_of
 from edgetally.units import Unit
@@ -68,6 +69,8 @@ def evidence(analysis: Analysis) -> list[tuple[str, str]]:
         f"{len(reading.curves)} curves, {len(outline.regions) + voids} closed loops: "
         f"{_count(len(outline.regions), 'outer boundary', 'outer boundaries')}, {_count(voids, 'void', 'voids')}",
     ))  # fmt: skip
+    if dimensions := dimension_evidence(analysis):
+        lines.append(("dimensions", dimensions))
     effect, unit = analysis.join_effect, analysis.drawing.unit
     limit = f"up to {length_text(analysis.drawing.join_gap, unit)}"
     if effect is None:
